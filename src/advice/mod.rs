@@ -1,0 +1,1 @@
+//! Findings: one file per family, one plain array that lists them.

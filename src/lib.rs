@@ -1,0 +1,19 @@
+//! scruple: the language in which laboratories write the recipes of their solutions, and the chemistry that checks them.
+//!
+//! Rooms, lowest first; a room uses only those above it in this list (`tests/layers.rs` holds the exact arrows).
+#![forbid(unsafe_code)]
+
+pub mod text;
+pub mod units;
+pub mod chemistry;
+pub mod finding;
+pub mod syntax;
+pub mod model;
+pub mod library;
+pub mod evaluate;
+pub mod advice;
+pub mod workspace;
+pub mod editor;
+pub mod report;
+pub mod server;
+pub mod command;

@@ -1,0 +1,1 @@
+//! The built-in library: substances, ions and constants, written in the language itself, each with its source.

@@ -1,0 +1,3 @@
+//! The `scruple` program: argument dispatch, nothing else.
+
+fn main() {}

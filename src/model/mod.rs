@@ -1,0 +1,1 @@
+//! What a file means: names, and the lowering from tree to substances, solutions and labs.

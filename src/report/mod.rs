@@ -1,0 +1,1 @@
+//! What people and machines read outside an editor; one file per format.

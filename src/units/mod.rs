@@ -1,0 +1,6 @@
+//! Dimensions, the one table of units, and quantities. Numbers are converted once on the way in (`Unit::to_base`) and
+//! formatted in one place.
+
+mod unit;
+
+pub use unit::{Dimension, Unit};

@@ -1,0 +1,1 @@
+//! Files, the graph of uses, configuration; an immutable snapshot of everything known.
