@@ -1,0 +1,115 @@
+//! Derivatives of the pH at a solved state, by the implicit function theorem.
+//!
+//! One solve with the transposed Jacobian gives the derivative with respect to everything: totals, water, constants, temperature.
+
+#![allow(clippy::indexing_slicing, reason = "matrices are indexed by the sizes they were made with, never by input")]
+
+use std::collections::BTreeMap;
+
+use nalgebra::DVector;
+
+use super::{
+    ConstantId, Mixture, State, debye_hueckel,
+    equilibrium::newton::Linearisation,
+    water::MOLAR_MASS_kg_per_mol as WATER_kg_per_mol,
+};
+
+/// The derivatives of the pH at a state. Where the Jacobian is singular, which no stable solution is, all are zero.
+#[derive(Clone, Debug)]
+pub struct Sensitivity<'a> {
+    state: &'a State,
+    /// ∂ ln a(H⁺)/∂(total of each balance), 1/mol.
+    to_totals: DVector<f64>,
+    /// ∂ ln a(H⁺)/∂(ln K) of each species' formation.
+    to_formation: DVector<f64>,
+}
+
+impl<'a> Sensitivity<'a> {
+    pub(super) fn new(state: &'a State) -> Self {
+        let (rows, columns) = state.system.counts.shape();
+        let solved = Self::adjoint(state);
+        let (to_totals, to_formation) = solved.unwrap_or((DVector::zeros(columns), DVector::zeros(rows)));
+        Self { state, to_totals, to_formation }
+    }
+
+    fn adjoint(state: &State) -> Option<(DVector<f64>, DVector<f64>)> {
+        let system = &state.system;
+        let columns = system.counts.ncols();
+        let linear = Linearisation::new(system, &state.point.molalities())?;
+        let mut hydrogen = DVector::zeros(columns);
+        hydrogen[0] = 1.0;
+        let weights = transposed_solve(&linear.jacobian, &hydrogen)?;
+        let to_formation = -transposed_solve(&linear.action, &linear.balance.tr_mul(&weights))?;
+        Some((weights.component_div(&linear.scale_mol), to_formation))
+    }
+
+    /// ∂pH for a unit of this mixture added.
+    pub fn pH_derivative(&self, direction: &Mixture) -> f64 {
+        let system = &self.state.system;
+        let mut change = self.to_totals[0] * direction.hydrogen_mol;
+        for (column, id) in system.components.iter().enumerate() {
+            if let Some(amount_mol) = direction.amounts_mol.get(id) {
+                change += self.to_totals[column + 1] * amount_mol;
+            }
+        }
+        // More water in the same proportions is the same as less of every total.
+        let water = direction.water_kg / WATER_kg_per_mol / system.water_mol;
+        change -= water * self.to_totals.dot(&system.totals_mol);
+        -change / core::f64::consts::LN_10
+    }
+
+    /// Buffer capacity β = dC_b/dpH, mol of strong base per litre and unit of pH, at constant volume.
+    pub fn buffer_capacity_mol_per_L(&self) -> f64 {
+        core::f64::consts::LN_10 / (self.to_totals[0] * self.state.volume_L)
+    }
+
+    /// ∂pH/∂(log₁₀ K) for every constant that takes part.
+    pub fn to_constants(&self) -> Vec<(ConstantId, f64)> {
+        let mut sums: BTreeMap<ConstantId, f64> = BTreeMap::new();
+        for (row, &id) in self.state.system.species.iter().enumerate() {
+            let Some(species) = self.state.chemistry.species(id) else { continue };
+            for &(factor, constant) in &species.log_beta {
+                *sums.entry(constant).or_insert(0.0) -= factor * self.to_formation[row];
+            }
+        }
+        sums.into_iter().collect()
+    }
+
+    /// ∂pH/∂T at fixed composition, 1/K.
+    pub fn dpH_dT_per_K(&self) -> f64 {
+        let (state, system) = (self.state, &self.state.system);
+        let t = state.temperature_K;
+        let mut change: f64 = self
+            .to_constants()
+            .iter()
+            .map(|&(id, derivative)| {
+                derivative * state.chemistry.constant(id).map_or(0.0, |c| c.slope_per_K(t))
+            })
+            .sum();
+        // ln γ and ln a_w are proportional to the Debye–Hückel slope but for the interactions, which are taken as constant.
+        let step = 0.01;
+        let growth = (debye_hueckel::slope(t + step) - debye_hueckel::slope(t - step)) / (2.0 * step * system.slope);
+        let term = system.model.ionic_term(system.slope, state.ionic_strength_mol_per_kg);
+        for row in 0..system.species.len() {
+            let z = system.charge[row];
+            let source = z * z * term.value + system.water[row] * WATER_kg_per_mol * term.osmotic_mol_per_kg;
+            change -= self.to_formation[row] * source * growth / core::f64::consts::LN_10;
+        }
+        change
+    }
+}
+
+/// Solves Mᵀ x = b with the factors of M.
+fn transposed_solve(
+    factors: &nalgebra::LU<f64, nalgebra::Dyn, nalgebra::Dyn>,
+    right: &DVector<f64>,
+) -> Option<DVector<f64>> {
+    // P M = L U, so Mᵀ = Uᵀ Lᵀ P.
+    let mut x = right.clone();
+    let (lower, upper) = (factors.l(), factors.u());
+    if !upper.tr_solve_upper_triangular_mut(&mut x) || !lower.tr_solve_lower_triangular_mut(&mut x) {
+        return None;
+    }
+    factors.p().inv_permute_rows(&mut x);
+    Some(x)
+}

@@ -1,0 +1,4 @@
+//! Checks of the core against published values and against itself.
+
+mod laboratory;
+mod standards;
