@@ -2,6 +2,7 @@
 //!
 //! Rooms, lowest first; a room uses only those above it in this list (`tests/layers.rs` holds the exact arrows).
 #![forbid(unsafe_code)]
+#![allow(non_snake_case, reason = "quantities are named with their units, and units keep their letter case: temperature_K")]
 
 pub mod text;
 pub mod units;

@@ -117,6 +117,13 @@ impl PartialEq for Chemistry {
     }
 }
 
+impl Default for Chemistry {
+    /// Water and nothing else.
+    fn default() -> Self {
+        Chemistry { tables: Arc::new(ChemistryBuilder::new().tables) }
+    }
+}
+
 impl Chemistry {
     /// The hydrogen ion.
     pub fn hydrogen(&self) -> SpeciesId {

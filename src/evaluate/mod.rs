@@ -1,1 +1,120 @@
 //! A solution's lines, in bench order, through the chemistry to a state; stocks out of stocks.
+
+mod bench;
+mod bottle;
+mod goods;
+mod names;
+mod outcome;
+mod plan;
+mod property;
+mod refusal;
+mod verdicts;
+
+use std::sync::Arc;
+
+pub use goods::{Goods, Stock};
+pub use names::{Found, is_ideal_solution};
+pub use outcome::*;
+pub use property::{PropertyValue, as_formula_factor, key_element, property_value};
+pub use refusal::Refusal;
+
+use crate::chemistry::Settings;
+use crate::finding::{Anchor, Code, Finding, Place};
+use crate::model::{Block, Body, Constituents, DefinitionKey, Lab, Recipe, Scope, Stated};
+
+/// Where no temperature is stated and no lab is in scope, K.
+pub const DEFAULT_TEMPERATURE_K: f64 = 298.15;
+
+/// Everything that a solution's values depend on besides its own lines.
+#[derive(Clone, Copy)]
+pub struct Context<'a> {
+    /// The root's chemistry.
+    pub constituents: &'a Constituents,
+    /// The names visible from the solution's file.
+    pub scope: &'a Scope,
+    /// The evaluations of the solutions and bottles that it takes; none for one that is in a cycle with it.
+    pub stocks: &'a (dyn Fn(&DefinitionKey) -> Option<Arc<Evaluation>> + Sync),
+    /// The lab that it is made in.
+    pub lab: Option<&'a Lab>,
+    /// The activity model.
+    pub settings: &'a Settings,
+}
+
+impl Context<'_> {
+    /// The temperature at which a recipe is made, K, with its half-width.
+    pub fn made_at_K(&self, recipe: &Recipe) -> (f64, f64) {
+        match (recipe.made_at, self.lab.and_then(|lab| lab.room)) {
+            (Some(stated), _) => (stated.value, 0.0),
+            (None, Some(Stated { value: (low, high), .. })) => (0.5 * (low + high), 0.5 * (high - low)),
+            (None, None) => (DEFAULT_TEMPERATURE_K, 0.0),
+        }
+    }
+}
+
+/// Evaluates a solution or a bottle. Other blocks give nothing.
+pub fn evaluate(block: &Block, context: &Context) -> Evaluation {
+    let (recipe, is_bottle) = match &block.body {
+        Body::Solution(recipe) => (recipe, false),
+        Body::Bottle(recipe) => (recipe, true),
+        _ => return Evaluation::default(),
+    };
+    let name = block.name.as_ref().map_or("", |name| name.text.as_str());
+    let mut findings = Vec::new();
+    let mut members = Vec::new();
+    for index in 0..recipe.members {
+        let outcome = match (recipe.sound, is_bottle) {
+            (false, _) => None,
+            (true, true) => settle(bottle::evaluate(block, recipe, context), &mut findings),
+            (true, false) => settle(bench::evaluate(block, recipe, index, context, &mut findings), &mut findings),
+        };
+        members.push(Member { name: member_name(name, recipe, index), outcome: outcome.map(Arc::new) });
+    }
+    if !recipe.sound || members.iter().any(|member| member.outcome.is_none()) {
+        // Every name is looked up even where the first mistake leaves the recipe without values.
+        names::report_all(recipe, context, &mut findings);
+    }
+    findings.dedup();
+    let mut unique: Vec<Finding> = Vec::new();
+    for finding in findings {
+        if !unique.contains(&finding) {
+            unique.push(finding);
+        }
+    }
+    Evaluation { members, findings: unique }
+}
+
+/// A solution's outcome, or the findings that say why there is none.
+fn settle(result: Result<Outcome, Refusal>, findings: &mut Vec<Finding>) -> Option<Outcome> {
+    match result {
+        Ok(outcome) => Some(outcome),
+        Err(refusal) => {
+            findings.extend(refusal.into_findings());
+            None
+        }
+    }
+}
+
+/// `NAME`, or `NAME (4 mL)` for a member of a series.
+fn member_name(name: &str, recipe: &Recipe, index: usize) -> String {
+    if recipe.members <= 1 {
+        return name.to_string();
+    }
+    match plan::series_value(recipe, index) {
+        Some(value) => format!("{name} ({value})"),
+        None => format!("{name} ({})", index + 1),
+    }
+}
+
+/// The finding for an ingredient whose own recipe has no values.
+fn ingredient_has_no_value(at: Anchor, name: &str, key: &DefinitionKey) -> Finding {
+    Finding::new(
+        Code::IngredientHasNoValue,
+        at,
+        format!("{name} could not be worked out, so neither can this solution."),
+    )
+    .help("Mend its recipe first.")
+    .related_at(
+        Place::Block { file: key.file, key: key.name.as_str().to_string(), anchor: Anchor::default() },
+        format!("{name} is defined here"),
+    )
+}

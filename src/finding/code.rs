@@ -70,6 +70,7 @@ codes! {
     NamelessBlock, "nameless-block", Error, "Lines that belong to no block, because the header above them cannot be read.";
     SaidTwiceDifferently, "said-twice-differently", Error, "Two lines of a block that say different things where one is needed.";
     FileNotFound, "file-not-found", Error, "A file named by `use` that is not there.";
+    FileNotReadable, "file-not-readable", Error, "A file that cannot be read as text.";
     PathOutsideRoot, "path-outside-root", Error, "A path that leads out of the library.";
     PathSpelling, "path-spelling", Error, "A path spelled otherwise than the file on disk.";
     UnknownName, "unknown-name", Error, "A name that nothing in scope bears.";

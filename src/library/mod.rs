@@ -1,1 +1,101 @@
 //! The built-in library: substances, ions and constants, written in the language itself, each with its source.
+
+use std::sync::{Arc, LazyLock};
+
+use crate::model::{self, BlockRole, Constituents, DefinitionKey, File, Names, namespace};
+use crate::syntax::{self, tree::Tree};
+use crate::text::{FileId, SourceText};
+
+/// The version of the library, which `scruple.toml` can pin. It changes whenever a constant does.
+pub const VERSION: &str = "1.0";
+
+macro_rules! files {
+    ($($name:literal),* $(,)?) => {
+        &[$(($name, include_str!(concat!("data/", $name)))),*]
+    };
+}
+
+/// The files of the library in reading order: name and text.
+const FILES: &[(&str, &str)] = files![
+    "ions-amines.prep",
+    "ions-amino.prep",
+    "ions-buffers.prep",
+    "ions-chelators.prep",
+    "ions-inorganic.prep",
+    "ions-metals.prep",
+    "ions-organic.prep",
+    "substances-acids-and-bases.prep",
+    "substances-salts-alkali.prep",
+    "substances-salts-oxoanions.prep",
+];
+
+/// A file of the library, read.
+#[derive(Clone, Debug)]
+pub struct LibraryFile {
+    /// Its name, as links and messages show it.
+    pub name: &'static str,
+    /// Its text.
+    pub source: Arc<SourceText>,
+    /// Its tree.
+    pub tree: Arc<Tree>,
+    /// Its meaning.
+    pub model: Arc<File>,
+}
+
+/// The library, read once.
+#[derive(Debug)]
+pub struct BuiltIn {
+    /// Its files.
+    pub files: Vec<LibraryFile>,
+    /// Its names.
+    pub names: Arc<Names>,
+    /// Its chemistry, for roots that add nothing to it.
+    pub constituents: Arc<Constituents>,
+}
+
+static BUILT_IN: LazyLock<BuiltIn> = LazyLock::new(read);
+
+/// The library.
+pub fn built_in() -> &'static BuiltIn {
+    &BUILT_IN
+}
+
+/// The first number that a file of a user's library can have; library files come before.
+pub fn first_user_file() -> FileId {
+    FileId(FILES.len() as u32)
+}
+
+/// The library file that a number stands for.
+pub fn file(id: FileId) -> Option<&'static LibraryFile> {
+    built_in().files.get(id.0 as usize)
+}
+
+fn read() -> BuiltIn {
+    use rayon::prelude::*;
+    let files: Vec<LibraryFile> = FILES
+        .par_iter()
+        .enumerate()
+        .map(|(index, (name, text))| {
+            let tree = Arc::new(syntax::parse(text));
+            let model = Arc::new(model::lower_file(FileId(index as u32), &tree, None));
+            LibraryFile { name, source: Arc::new(SourceText::from(*text)), tree, model }
+        })
+        .collect();
+    let mut names = Names::default();
+    for file in &files {
+        names.add_file(file.model.id, &file.model.blocks);
+    }
+    let constituents = Constituents::build(files.iter().flat_map(|file| definitions(&file.model)));
+    BuiltIn { files, names: Arc::new(names), constituents: Arc::new(constituents) }
+}
+
+/// The blocks of a file that define something, each with its key.
+pub fn definitions(file: &File) -> impl Iterator<Item = (DefinitionKey, &model::Block)> {
+    file.blocks.iter().filter_map(|block| match (block.role, &block.name) {
+        (BlockRole::Defines(kind), Some(name)) => {
+            let key = DefinitionKey { file: file.id, namespace: namespace(kind), name: name.key.clone() };
+            Some((key, block.as_ref()))
+        }
+        _ => None,
+    })
+}

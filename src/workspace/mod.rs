@@ -1,1 +1,187 @@
 //! Files, the graph of uses, configuration; an immutable snapshot of everything known.
+
+mod build;
+mod configuration;
+mod disk;
+mod order;
+mod snapshot;
+
+pub use configuration::{Configuration, ConfigurationError};
+pub use disk::{find_root, recipe_files};
+pub use snapshot::{Checked, FileState, Located, Origin, RootView, Snapshot};
+
+use std::collections::BTreeMap;
+use std::sync::Arc;
+
+use camino::{Utf8Path, Utf8PathBuf};
+
+use crate::library;
+use crate::text::{FileId, SourceText};
+
+/// Everything that can change: which files there are and what stands in them. Each call of [`Workspace::snapshot`] gives
+/// what is known of the present state.
+#[derive(Debug, Default)]
+pub struct Workspace {
+    /// Absolute paths by number; never shrinks, so that a number stays its file's.
+    paths: Vec<Utf8PathBuf>,
+    /// The numbers by path.
+    ids: BTreeMap<Utf8PathBuf, FileId>,
+    /// What stands in each file.
+    texts: BTreeMap<FileId, Entry>,
+    /// The roots that have been opened, with their configuration.
+    roots: BTreeMap<Utf8PathBuf, Arc<Configuration>>,
+    /// Which root each file belongs to.
+    root_of: BTreeMap<FileId, Utf8PathBuf>,
+    /// What was known before the last change.
+    last: Option<Arc<Snapshot>>,
+}
+
+/// What stands in a file: in the editor where it is open there, else on disk.
+#[derive(Debug, Default, Clone)]
+struct Entry {
+    open: Option<Arc<SourceText>>,
+    disk: Option<Arc<SourceText>>,
+    disk_problem: Option<String>,
+}
+
+impl Workspace {
+    /// A workspace without files.
+    pub fn new() -> Self {
+        Workspace::default()
+    }
+
+    /// The number of a file, made up if it is new. `path` is absolute.
+    pub fn file_id(&mut self, path: &Utf8Path) -> FileId {
+        if let Some(id) = self.ids.get(path) {
+            return *id;
+        }
+        let id = FileId(library::first_user_file().0 + self.paths.len() as u32);
+        self.paths.push(path.to_owned());
+        self.ids.insert(path.to_owned(), id);
+        id
+    }
+
+    /// Opens the root that holds `path` (a folder or a file) and reads every recipe file in it.
+    /// `folder` bounds the search for a root: the workspace folder, or the folder that was named.
+    pub fn open_root(&mut self, path: &Utf8Path, folder: &Utf8Path) -> Utf8PathBuf {
+        let root = find_root(path, folder);
+        self.reload_configuration(&root);
+        for file in recipe_files(&root) {
+            self.read(&file, &root);
+        }
+        root
+    }
+
+    /// Opens a single file without walking its root: for files outside any folder that may be walked. What it uses is
+    /// read too.
+    pub fn open_file(&mut self, path: &Utf8Path, folder: &Utf8Path) -> FileId {
+        let root = find_root(path, folder);
+        if !self.roots.contains_key(&root) {
+            self.reload_configuration(&root);
+        }
+        self.read(path, &root)
+    }
+
+    /// Reads the configuration of a root again.
+    pub fn reload_configuration(&mut self, root: &Utf8Path) {
+        self.roots.insert(root.to_owned(), Arc::new(Configuration::read(root)));
+    }
+
+    /// Reads a file from disk again; a file that has vanished is forgotten unless it is open in an editor.
+    pub fn reread(&mut self, path: &Utf8Path) {
+        let root = self.root_for(path);
+        self.read(path, &root);
+    }
+
+    fn root_for(&self, path: &Utf8Path) -> Utf8PathBuf {
+        let own = self.ids.get(path).and_then(|id| self.root_of.get(id)).cloned();
+        own.or_else(|| {
+            // The deepest root that holds the file.
+            self.roots.keys().filter(|root| path.starts_with(root)).max_by_key(|root| root.as_str().len()).cloned()
+        })
+        .unwrap_or_else(|| find_root(path, path.parent().unwrap_or(path)))
+    }
+
+    fn read(&mut self, path: &Utf8Path, root: &Utf8Path) -> FileId {
+        let id = self.file_id(path);
+        self.root_of.insert(id, root.to_owned());
+        let entry = self.texts.entry(id).or_default();
+        match disk::read(path) {
+            Ok(Some(text)) => {
+                if entry.disk.as_ref().is_none_or(|old| old.as_str() != text) {
+                    entry.disk = Some(Arc::new(SourceText::from(text.as_str())));
+                }
+                entry.disk_problem = None;
+            }
+            Ok(None) => {
+                entry.disk = None;
+                entry.disk_problem = None;
+            }
+            Err(problem) => {
+                entry.disk = None;
+                entry.disk_problem = Some(problem);
+            }
+        }
+        if entry.open.is_none() && entry.disk.is_none() && entry.disk_problem.is_none() {
+            self.texts.remove(&id);
+        }
+        id
+    }
+
+    /// Takes over the text of an editor. Until [`Workspace::close`], the file on disk does not matter.
+    pub fn set_open_text(&mut self, path: &Utf8Path, text: Arc<SourceText>) -> FileId {
+        let id = self.file_id(path);
+        if !self.root_of.contains_key(&id) {
+            let root = self.root_for(path);
+            if !self.roots.contains_key(&root) {
+                self.reload_configuration(&root);
+            }
+            self.root_of.insert(id, root);
+        }
+        self.texts.entry(id).or_default().open = Some(text);
+        id
+    }
+
+    /// Forgets an editor's text; the file on disk counts again.
+    pub fn close(&mut self, path: &Utf8Path) {
+        if let Some(entry) = self.ids.get(path).and_then(|id| self.texts.get_mut(id)) {
+            entry.open = None;
+        }
+        self.reread(path);
+    }
+
+    /// The text that an editor holds of a file.
+    pub fn open_text(&self, path: &Utf8Path) -> Option<Arc<SourceText>> {
+        self.ids.get(path).and_then(|id| self.texts.get(id)).and_then(|entry| entry.open.clone())
+    }
+
+    /// The files that are open in an editor.
+    pub fn open_files(&self) -> impl Iterator<Item = &Utf8Path> {
+        self.texts
+            .iter()
+            .filter(|(_, entry)| entry.open.is_some())
+            .filter_map(|(id, _)| self.paths.get((id.0 - library::first_user_file().0) as usize))
+            .map(Utf8PathBuf::as_path)
+    }
+
+    /// Everything that is known now. What did not change is shared with the snapshot before.
+    pub fn snapshot(&mut self) -> Arc<Snapshot> {
+        let inputs: Vec<build::FileInput> = self
+            .texts
+            .iter()
+            .filter_map(|(id, entry)| {
+                let path = self.paths.get((id.0 - library::first_user_file().0) as usize)?;
+                let root = self.root_of.get(id)?;
+                let (source, origin) = match (&entry.open, &entry.disk) {
+                    (Some(open), _) => (open.clone(), Origin::Editor),
+                    (None, Some(disk)) => (disk.clone(), Origin::Disk),
+                    (None, None) => (Arc::new(SourceText::from("")), Origin::Unreadable(entry.disk_problem.clone()?)),
+                };
+                Some(build::FileInput { id: *id, path: path.clone(), root: root.clone(), source, origin })
+            })
+            .collect();
+        let snapshot = Arc::new(build::snapshot(inputs, &self.roots, self.last.as_deref()));
+        self.last = Some(snapshot.clone());
+        snapshot
+    }
+}

@@ -1,0 +1,485 @@
+//! What stands on the bench: a kilogram of a substance, an ideal solution, a bottle or a stock, and how dense it is.
+
+use std::sync::Arc;
+
+use super::names::{Found, written_form};
+use super::{Context, Outcome, Refusal, Solute, ingredient_has_no_value};
+use crate::chemistry::{Mixture, State};
+use crate::finding::{Code, Finding};
+use crate::model::{Amount, DefinitionKey, Qualifiers, Reference, StrengthKind, Substance, is_water};
+use crate::syntax::tree::BlockKind;
+use crate::units::Dimension;
+
+/// Volume that a kilogram of inert matter of unstated density takes up in solution, L. Common practice, no source: organic
+/// solids and polymers lie between 0.7 and 0.9 L/kg.
+pub const INERT_LITRES_PER_KG: f64 = 0.75;
+
+/// Something to take from, per kilogram.
+#[derive(Clone, Debug)]
+pub struct Goods {
+    /// What the line calls it.
+    pub name: String,
+    /// What it is.
+    pub definition: DefinitionKey,
+    /// What a kilogram of it holds.
+    pub per_kg: Mixture,
+    /// Water in a kilogram: free, of crystallisation, of a strength; not that of hydroxide ions, kg.
+    pub water_kg: f64,
+    /// Its density, kg/m³ (g/L); none for solids.
+    pub density: Option<f64>,
+    /// The one substance whose amount a line can mean, with mol per kg and its pure mass per kg.
+    pub solute: Option<(DefinitionKey, f64, f64)>,
+    /// Whether it is water, or a liquid that others are dissolved in.
+    pub is_liquid: bool,
+    /// The stock that it is, where it is one.
+    pub stock: Option<Stock>,
+    /// The substances in a kilogram.
+    pub solutes: Vec<Solute>,
+}
+
+/// A solution or bottle of the library, evaluated.
+#[derive(Clone, Debug)]
+pub struct Stock {
+    /// Its outcome.
+    pub outcome: Arc<Outcome>,
+    /// Whether it is a bottle.
+    pub is_bottle: bool,
+    /// How many times stronger than used it says to be.
+    pub concentrate: Option<f64>,
+}
+
+impl Goods {
+    /// Mass of a volume (L), kg; none for solids.
+    pub fn mass_of_litres(&self, litres: f64) -> Option<f64> {
+        self.density.map(|density| litres * density / 1000.0)
+    }
+}
+
+/// The goods that a reference means. `qualifiers` may give a density, purity and water.
+pub fn goods(
+    reference: &Reference,
+    found: &Found,
+    qualifiers: &Qualifiers,
+    temperature_K: f64,
+    context: &Context,
+) -> Result<Goods, Refusal> {
+    let stated_density = qualifiers.density.map(|density| density.value);
+    let goods = match (found.substance(), &reference.strength) {
+        (Some(substance), None) => pure(reference, found, substance, qualifiers, context)?,
+        (Some(substance), Some(strength)) => match strength.kind {
+            StrengthKind::Concentration(amount) => {
+                ideal_solution(reference, found, substance, &amount, stated_density, temperature_K, context)?
+            }
+            StrengthKind::Ratio { of_it, of_water } => {
+                let pure = pure(reference, found, substance, qualifiers, context)?;
+                diluted(reference, pure, of_it, of_water, temperature_K, context)?
+            }
+        },
+        (None, strength) => {
+            let stock = stock(reference, found, temperature_K, context)?;
+            match strength.map(|strength| strength.kind) {
+                None => stock,
+                Some(StrengthKind::Ratio { of_it, of_water }) => {
+                    diluted(reference, stock, of_it, of_water, temperature_K, context)?
+                }
+                Some(StrengthKind::Concentration(_)) => {
+                    return Err(Finding::new(
+                        Code::StrengthOrName,
+                        reference.at,
+                        format!("{} has a strength of its own, so none can stand before it.", reference.text),
+                    )
+                    .help("Remove the strength, or name the substance instead.")
+                    .into());
+                }
+            }
+        }
+    };
+    Ok(match stated_density {
+        Some(density) => Goods { density: Some(density), ..goods },
+        None => goods,
+    })
+}
+
+/// What a mole of a substance brings, or the finding that says why it is not known.
+fn per_mole(reference: &Reference, found: &Found, substance: &Substance, context: &Context) -> Result<(Mixture, f64), Refusal> {
+    use crate::model::CompositionRefusal as Why;
+    context.constituents.per_mole(&found.definition.key, substance).map_err(|why| {
+        let message = match why {
+            Why::Inert | Why::NoMolarMass => {
+                format!("{} has no formula, so its amount of substance is not known.", reference.text)
+            }
+            Why::Unknown(name) => format!(
+                "{} gives {}, which no ion or molecule is called.",
+                found.definition.name(),
+                name.text
+            ),
+            Why::DoesNotBalance { missing_g_per_mol } => format!(
+                "What {} gives and its formula differ by {missing_g_per_mol:.2} g/mol, which is not water.",
+                found.definition.name()
+            ),
+        };
+        Finding::new(Code::BadDefinition, reference.at, message)
+            .help("Mend the substance's block, or state the line by mass.")
+            .related_at(super::names::place_of(found.definition), "defined here")
+            .into()
+    })
+}
+
+/// A substance as weighed: of purity P in the dried goods, which hold water W.
+fn pure(
+    reference: &Reference,
+    found: &Found,
+    substance: &Substance,
+    qualifiers: &Qualifiers,
+    context: &Context,
+) -> Result<Goods, Refusal> {
+    let purity = qualifiers.purity.map_or(1.0, |purity| purity.value);
+    let water = qualifiers.water.map_or(0.0, |water| water.value);
+    let share = purity * (1.0 - water);
+    let is_liquid = substance.form.as_deref() == Some("liquid");
+    let mut per_kg = Mixture { water_kg: water, ..Mixture::default() };
+    let mut water_kg = water;
+    let inert_kg = (1.0 - water) * (1.0 - purity);
+    per_kg.inert_mass_kg = inert_kg;
+    per_kg.inert_volume_L = inert_kg * INERT_LITRES_PER_KG;
+    let inert = substance.inert || substance.molar_mass.is_none();
+    let mut solute = None;
+    if inert {
+        per_kg.inert_mass_kg += share;
+        per_kg.inert_volume_L += share * substance.density.map_or(INERT_LITRES_PER_KG, |density| 1000.0 / density);
+        if let Some(molar_mass) = substance.molar_mass {
+            solute = Some((found.definition.key.clone(), share / molar_mass, share));
+        }
+    } else if let Some(molar_mass) = substance.molar_mass {
+        let (mole, crystal_water) = per_mole(reference, found, substance, context)?;
+        per_kg.add(&mole, share / molar_mass);
+        water_kg += crystal_water * share / molar_mass;
+        solute = Some((found.definition.key.clone(), share / molar_mass, share));
+    }
+    let water_itself = is_water(substance);
+    let solutes = if water_itself {
+        Vec::new()
+    } else {
+        vec![Solute {
+            definition: found.definition.key.clone(),
+            name: found.definition.name().to_string(),
+            amount_mol: solute.as_ref().map(|(_, moles, _)| *moles),
+            mass_kg: share,
+        }]
+    };
+    Ok(Goods {
+        name: reference.text.clone(),
+        definition: found.definition.key.clone(),
+        density: if is_liquid || water_itself { substance.density } else { None },
+        per_kg,
+        water_kg,
+        solute,
+        is_liquid: is_liquid || water_itself,
+        stock: None,
+        solutes,
+    })
+}
+
+/// A substance at a strength: a solution of it in water and nothing else.
+#[allow(clippy::too_many_arguments, reason = "all of them are what a strength can depend on")]
+fn ideal_solution(
+    reference: &Reference,
+    found: &Found,
+    substance: &Substance,
+    strength: &Amount,
+    stated_density: Option<f64>,
+    temperature_K: f64,
+    context: &Context,
+) -> Result<Goods, Refusal> {
+    let share = mass_fraction(reference, found, substance, strength, stated_density, temperature_K, context)?;
+    let mut per_kg = Mixture { water_kg: 1.0 - share, ..Mixture::default() };
+    let mut water_kg = 1.0 - share;
+    let mut solute = None;
+    match substance.molar_mass {
+        Some(molar_mass) if !substance.inert => {
+            let (mole, crystal_water) = per_mole(reference, found, substance, context)?;
+            per_kg.add(&mole, share / molar_mass);
+            water_kg += crystal_water * share / molar_mass;
+            solute = Some((found.definition.key.clone(), share / molar_mass, share));
+        }
+        _ => {
+            per_kg.inert_mass_kg += share;
+            per_kg.inert_volume_L += share * substance.density.map_or(INERT_LITRES_PER_KG, |density| 1000.0 / density);
+        }
+    }
+    let density = stated_density
+        .or_else(|| table_density(substance, share))
+        .or_else(|| density_of(&per_kg, temperature_K, context));
+    Ok(Goods {
+        name: reference.text.clone(),
+        definition: found.definition.key.clone(),
+        density,
+        solutes: vec![Solute {
+            definition: found.definition.key.clone(),
+            name: found.definition.name().to_string(),
+            amount_mol: solute.as_ref().map(|(_, moles, _)| *moles),
+            mass_kg: share,
+        }],
+        per_kg,
+        water_kg,
+        solute,
+        is_liquid: true,
+        stock: None,
+    })
+}
+
+/// The mass fraction of a substance in a solution of this strength.
+#[allow(clippy::too_many_arguments, reason = "all of them are what a strength can depend on")]
+pub fn mass_fraction(
+    reference: &Reference,
+    found: &Found,
+    substance: &Substance,
+    strength: &Amount,
+    stated_density: Option<f64>,
+    temperature_K: f64,
+    context: &Context,
+) -> Result<f64, Refusal> {
+    let refuse = |message: String, help: &str| -> Refusal {
+        Finding::new(Code::UnitOfWrongKind, reference.at, message).help(help).into()
+    };
+    let molar_mass = || {
+        substance.molar_mass.ok_or_else(|| {
+            refuse(format!("{} has no molar mass, so it has no strength in mol.", reference.text), "State it in g/L or % w/w.")
+        })
+    };
+    let share = match strength.dimension() {
+        Dimension::MassFraction => strength.value,
+        Dimension::Molality => {
+            let grams_per_kg = strength.value * molar_mass()?;
+            grams_per_kg / (1.0 + grams_per_kg)
+        }
+        Dimension::AmountConcentration => {
+            let grams_per_litre = strength.value * molar_mass()? * 1000.0;
+            share_at(grams_per_litre, reference, found, substance, stated_density, temperature_K, context)?
+        }
+        Dimension::MassConcentration => {
+            share_at(strength.value, reference, found, substance, stated_density, temperature_K, context)?
+        }
+        Dimension::VolumeFraction => match substance.density {
+            Some(density) => {
+                let grams_per_litre = strength.value * density;
+                share_at(grams_per_litre, reference, found, substance, stated_density, temperature_K, context)?
+            }
+            None => {
+                return Err(refuse(
+                    format!("The density of {} is not known, so neither is its strength by volume.", reference.text),
+                    "State the strength in % w/w or mol/L.",
+                ));
+            }
+        },
+        _ => return Err(refuse("This unit is no strength.".into(), "State the strength in mol/L, g/L, % w/w, % w/v or % v/v.")),
+    };
+    if !(0.0..=1.0 + 1e-9).contains(&share) {
+        return Err(refuse(
+            format!("No solution of {} is as strong as that: it would hold more than its own mass.", reference.text),
+            "Check the strength.",
+        ));
+    }
+    Ok(share.min(1.0))
+}
+
+/// The mass fraction at a mass concentration (g/L): w = ρ/d(w), where the density depends on w itself.
+#[allow(clippy::too_many_arguments, reason = "all of them are what a strength can depend on")]
+fn share_at(
+    grams_per_litre: f64,
+    reference: &Reference,
+    found: &Found,
+    substance: &Substance,
+    stated_density: Option<f64>,
+    temperature_K: f64,
+    context: &Context,
+) -> Result<f64, Refusal> {
+    if let Some(density) = stated_density {
+        return Ok(grams_per_litre / density);
+    }
+    let mole = match substance.molar_mass {
+        Some(molar_mass) if !substance.inert => {
+            Some(per_mole(reference, found, substance, context)?.0.scaled(1.0 / molar_mass))
+        }
+        _ => None,
+    };
+    let density_at = |share: f64| {
+        table_density(substance, share).or_else(|| {
+            let mut mixture = Mixture { water_kg: 1.0 - share, ..Mixture::default() };
+            match &mole {
+                Some(mole) => mixture.add(mole, share),
+                None => {
+                    mixture.inert_mass_kg += share;
+                    mixture.inert_volume_L +=
+                        share * substance.density.map_or(INERT_LITRES_PER_KG, |density| 1000.0 / density);
+                }
+            }
+            density_of(&mixture, temperature_K, context)
+        })
+    };
+    let mut share = (grams_per_litre / 1000.0).min(0.95);
+    // The density changes slowly with the share, so this closes in by a factor of three or more a step.
+    for _ in 0..60 {
+        let Some(density) = density_at(share.clamp(0.0, 1.0)) else { break };
+        let next = grams_per_litre / density;
+        if (next - share).abs() < 1e-13 {
+            return Ok(next);
+        }
+        share = next;
+    }
+    Ok(share)
+}
+
+/// Density of a solution of this mass fraction by the substance's table, kg/m³; none outside it.
+pub fn table_density(substance: &Substance, share: f64) -> Option<f64> {
+    let table = &substance.aqueous;
+    let (last, ..) = *table.last()?;
+    if share > last + 1e-12 {
+        return None;
+    }
+    let upper = table.partition_point(|(fraction, ..)| *fraction < share);
+    let (high_share, high_density, _) = *table.get(upper)?;
+    let (low_share, low_density) = match upper.checked_sub(1).and_then(|lower| table.get(lower)) {
+        Some((fraction, density, _)) => (*fraction, *density),
+        // Below the first row lies pure water.
+        None => (0.0, 998.2),
+    };
+    if high_share - low_share < 1e-12 {
+        return Some(high_density);
+    }
+    let part = (share - low_share) / (high_share - low_share);
+    Some(low_density + part * (high_density - low_density))
+}
+
+/// Density of a mixture by the chemistry, or by adding volumes where there is no water, kg/m³.
+pub fn density_of(mixture: &Mixture, temperature_K: f64, context: &Context) -> Option<f64> {
+    let volume = volume_of(mixture, temperature_K, context)?;
+    (volume > 0.0).then(|| 1000.0 * mixture.mass_kg(&context.constituents.chemistry) / volume)
+}
+
+/// Volume of a mixture, L.
+pub fn volume_of(mixture: &Mixture, temperature_K: f64, context: &Context) -> Option<f64> {
+    match context.constituents.chemistry.solve(mixture, temperature_K, context.settings) {
+        Ok(state) => Some(state.volume_L),
+        Err(_) => dry_volume_L(mixture, context),
+    }
+}
+
+/// Volume of what holds no water, by adding the molar volumes, L; none where one is not known.
+pub fn dry_volume_L(mixture: &Mixture, context: &Context) -> Option<f64> {
+    let chemistry = &context.constituents.chemistry;
+    let mut volume = mixture.inert_volume_L + mixture.water_kg.max(0.0);
+    for (component, amount) in &mixture.amounts_mol {
+        let species = chemistry.base_species(*component)?;
+        let molar = match chemistry.molar_volume_cm3_per_mol(species) {
+            Some(molar) => molar,
+            None => 1e6 * chemistry.component(*component)?.molar_mass_kg_per_mol / 1300.0,
+        };
+        volume += amount * molar / 1000.0;
+    }
+    Some(volume)
+}
+
+/// Volumes of the thing and of water, as a strength in brackets says (ISO 78-2).
+fn diluted(
+    reference: &Reference,
+    goods: Goods,
+    of_it: f64,
+    of_water: f64,
+    temperature_K: f64,
+    context: &Context,
+) -> Result<Goods, Refusal> {
+    let Some(density) = goods.density else {
+        return Err(Finding::new(
+            Code::UnitOfWrongKind,
+            reference.at,
+            format!("{} is no liquid, so it is not diluted by volumes.", reference.text),
+        )
+        .help("State its strength in g/L or mol/L.")
+        .into());
+    };
+    let mass = of_it * density / 1000.0;
+    let water = of_water * crate::chemistry::water::density_kg_per_m3(temperature_K) / 1000.0;
+    let total = mass + water;
+    if total <= 0.0 || !total.is_finite() {
+        return Err(Finding::new(Code::BadNumber, reference.at, "Both volumes are zero.").into());
+    }
+    let factor = mass / total;
+    let mut per_kg = goods.per_kg.scaled(factor);
+    per_kg.water_kg += water / total;
+    let density = density_of(&per_kg, temperature_K, context);
+    Ok(Goods {
+        density,
+        solute: goods.solute.map(|(key, moles, mass)| (key, factor * moles, factor * mass)),
+        solutes: goods.solutes.into_iter().map(|solute| scaled(&solute, factor)).collect(),
+        water_kg: factor * goods.water_kg + water / total,
+        per_kg,
+        ..goods
+    })
+}
+
+/// A solute's amounts times a factor.
+pub fn scaled(solute: &Solute, factor: f64) -> Solute {
+    Solute {
+        amount_mol: solute.amount_mol.map(|amount| amount * factor),
+        mass_kg: solute.mass_kg * factor,
+        ..solute.clone()
+    }
+}
+
+/// A solution or bottle of the library as an ingredient.
+fn stock(reference: &Reference, found: &Found, temperature_K: f64, context: &Context) -> Result<Goods, Refusal> {
+    let key = &found.definition.key;
+    let name = found.definition.name();
+    let evaluation = (context.stocks)(key);
+    let outcome = evaluation.as_ref().and_then(|evaluation| evaluation.outcome()).cloned();
+    let members = evaluation.map_or(1, |evaluation| evaluation.members.len());
+    if members > 1 {
+        return Err(Finding::new(
+            Code::AmbiguousName,
+            reference.at,
+            format!("{name} is a series of {members} solutions; which one is meant is not said."),
+        )
+        .help(format!("Name the member, for instance {}.", written_form(&format!("{name} (VALUE)"))))
+        .into());
+    }
+    let Some(outcome) = outcome else {
+        return Err(ingredient_has_no_value(reference.at, name, key).into());
+    };
+    let per_kg = outcome.mixture.scaled(1.0 / outcome.mass_kg);
+    let solutes: Vec<Solute> = outcome.solutes.iter().map(|solute| scaled(solute, 1.0 / outcome.mass_kg)).collect();
+    let is_bottle = found.kind() == Some(BlockKind::Bottle);
+    // A stock is at its taker's temperature; a bottle's label is taken as it stands.
+    let density = if is_bottle || (outcome.made_at_K - temperature_K).abs() < 0.01 {
+        outcome.mass_kg / outcome.volume_L
+    } else {
+        match context.constituents.chemistry.solve(&outcome.mixture, temperature_K, context.settings) {
+            Ok(state) => outcome.mass_kg / state.volume_L,
+            Err(_) => outcome.mass_kg / outcome.volume_L,
+        }
+    } * 1000.0;
+    let solute = match solutes.as_slice() {
+        [one] => one.amount_mol.map(|moles| (one.definition.clone(), moles, one.mass_kg)),
+        _ => None,
+    };
+    Ok(Goods {
+        name: reference.text.clone(),
+        definition: key.clone(),
+        per_kg,
+        water_kg: outcome.water_kg / outcome.mass_kg,
+        density: Some(density),
+        solute,
+        is_liquid: true,
+        stock: Some(Stock {
+            is_bottle,
+            concentrate: found.definition.block.recipe().and_then(|recipe| recipe.concentrate).map(|fold| fold.value),
+            outcome,
+        }),
+        solutes,
+    })
+}
+
+/// The beaker's state at a temperature.
+pub fn state_of(mixture: &Mixture, temperature_K: f64, context: &Context) -> Result<State, crate::chemistry::Failure> {
+    context.constituents.chemistry.solve(mixture, temperature_K, context.settings)
+}

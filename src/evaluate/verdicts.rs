@@ -1,0 +1,87 @@
+//! Whether what a recipe expects holds: at the making, at every use temperature, and after dilution.
+
+use super::bench::diluted;
+use super::goods::state_of;
+use super::property::{PropertyValue, property_value};
+use super::{Context, Outcome, Refusal, Verdict};
+use crate::finding::Finding;
+use crate::model::{Expectation, Recipe};
+
+/// Limits are compared with the rounding of a double in mind.
+const SLACK: f64 = 1e-9;
+
+/// Fills in the states at use temperatures and judges every expectation.
+pub(super) fn verdicts(
+    recipe: &Recipe,
+    mut outcome: Outcome,
+    context: &Context,
+    findings: &mut Vec<Finding>,
+) -> Result<Outcome, Refusal> {
+    outcome.uses = recipe
+        .used_at
+        .iter()
+        .map(|kelvin| (kelvin.value, state_of(&outcome.mixture, kelvin.value, context)))
+        .collect();
+    for (index, expectation) in recipe.expectations.iter().enumerate() {
+        let temperatures = match expectation.temperature {
+            Some(kelvin) => vec![kelvin],
+            // Without a temperature it must hold at the making and at every use temperature.
+            None => {
+                let mut all = vec![outcome.made_at_K];
+                all.extend(recipe.used_at.iter().map(|kelvin| kelvin.value).filter(|kelvin| (kelvin - outcome.made_at_K).abs() > 1e-6));
+                all
+            }
+        };
+        let mut reported = false;
+        for temperature_K in temperatures {
+            let value = match value_of(expectation, &outcome, temperature_K, context) {
+                Ok(value) => value,
+                Err(refusals) => {
+                    if !reported {
+                        findings.extend(refusals);
+                    }
+                    reported = true;
+                    None
+                }
+            };
+            let holds = value.map(|value| {
+                let slack = SLACK * value.abs().max(1e-3);
+                expectation.low.is_none_or(|low| value >= low - slack)
+                    && expectation.high.is_none_or(|high| value <= high + slack)
+            });
+            outcome.verdicts.push(Verdict {
+                expectation: index,
+                at: expectation.at,
+                property: expectation.property.clone(),
+                temperature_K,
+                fold: expectation.diluted.as_ref().map_or(1.0, |dilution| dilution.fold),
+                value,
+                low: expectation.low,
+                high: expectation.high,
+                unit: expectation.unit,
+                holds,
+            });
+        }
+    }
+    Ok(outcome)
+}
+
+/// The value of what is expected; nothing where the chemistry gave no state.
+fn value_of(
+    expectation: &Expectation,
+    outcome: &Outcome,
+    temperature_K: f64,
+    context: &Context,
+) -> Result<Option<f64>, Vec<Finding>> {
+    let mixture = match &expectation.diluted {
+        None => outcome.mixture.clone(),
+        Some(dilution) => diluted(&outcome.mixture, dilution.fold, dilution.with.as_ref(), outcome.made_at_K, context)
+            .map_err(Refusal::into_findings)?,
+    };
+    let Ok(state) = state_of(&mixture, temperature_K, context) else { return Ok(None) };
+    let formula = expectation.as_formula.as_ref().map(|(_, formula)| formula);
+    property_value(&state, &expectation.property, expectation.unit, formula, context).map(Some).map_err(|why| match why {
+        PropertyValue::Unknown(refusal) => refusal.into_findings(),
+        other => vec![other.finding(expectation.at)],
+    })
+}
