@@ -5,6 +5,8 @@ use std::io::{self, BufRead, Read, Write};
 use serde_json::Value;
 use tower_lsp::jsonrpc::{Error, Id, Request, Response};
 
+use super::capabilities::readable_initialize;
+
 /// Longest line of a header that is looked at; what is longer is no header.
 const LONGEST_HEADER_LINE: u64 = 8 * 1024;
 
@@ -101,6 +103,7 @@ fn decode(body: &[u8]) -> Message {
 fn tolerated_params(method: &str, params: Option<Value>) -> Option<Value> {
     match (method, params) {
         ("shutdown" | "exit", _) => None,
+        ("initialize", Some(params)) => Some(readable_initialize(params)),
         ("initialized", None | Some(Value::Null | Value::Array(_))) => Some(Value::Object(Default::default())),
         (_, Some(Value::Null)) => None,
         (_, params) => params,

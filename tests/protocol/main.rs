@@ -1,0 +1,5 @@
+//! The real program as editors meet it: `scruple serve`, spoken to in plain JSON-RPC.
+
+mod client;
+mod lifecycle;
+mod texts;
