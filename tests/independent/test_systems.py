@@ -1,0 +1,64 @@
+"""The program's pH against SciPy's, from the same constants, to 1e-6.
+
+What differs is everything else: the reader of the library, the equations' form, the solver, the osmotic integral.
+"""
+
+import json
+import os
+import re
+import subprocess
+import unittest
+from pathlib import Path
+
+import equilibrium
+import library
+
+HERE = Path(__file__).parent
+PROGRAM = os.environ.get("SCRUPLE", "scruple")
+AGREEMENT = 1e-6
+
+
+def recipes():
+    """Name, temperatures and molalities of each solution in systems.prep."""
+    for kind, name, statements in library.blocks(HERE / "systems.prep"):
+        temperatures, molalities = [], []
+        for statement in statements:
+            if statement.startswith(("made at", "used at")):
+                temperatures += [float(t) for t in re.findall(r"(\d+) °C", statement)]
+            elif match := re.match(r"([\d.]+) mol/kg\s+(.+)", statement):
+                molalities.append((float(match[1]), match[2]))
+        yield name, temperatures, molalities
+
+
+def shown():
+    """What the program says of each solution: pH by temperature."""
+    command = [PROGRAM, "show", str(HERE / "systems.prep"), "--format", "json"]
+    printed = json.loads(subprocess.run(command, capture_output=True, text=True, check=False).stdout)
+    return {
+        solution["name"]: {state["temperature_C"]: state["pH"] for state in solution["at"]}
+        for solution in printed["solutions"]
+    }
+
+
+class Systems(unittest.TestCase):
+    def test_every_system_agrees(self):
+        constants, program = library.load(), shown()
+        names = set()
+        for name, temperatures, molalities in recipes():
+            totals, hydrogen = {}, 0.0
+            for molality, substance in molalities:
+                for count, ion in constants.substances[substance.casefold()][2]:
+                    if ion in ("hydrogen", "hydroxide"):
+                        hydrogen += count * molality * (1 if ion == "hydrogen" else -1)
+                    else:
+                        totals[ion] = totals.get(ion, 0.0) + count * molality
+            for celsius in temperatures:
+                with self.subTest(solution=name, celsius=celsius):
+                    expected, _ = equilibrium.System(constants, totals, hydrogen, celsius + 273.15).solve()
+                    self.assertAlmostEqual(program[name][celsius], expected, delta=AGREEMENT)
+            names.add(name)
+        self.assertGreaterEqual(len(names), 20)
+
+
+if __name__ == "__main__":
+    unittest.main()
