@@ -1,0 +1,222 @@
+//! The program against the outside: every published value of `tests/published/`, judged on the path of a user's file.
+//!
+//! Each `expect` line there names its source and carries the accuracy goal as its window. A goal that is not met stands in
+//! [`NOT_MET`] with the reason and the worst difference so far, which may not grow; one that is met must leave the table.
+
+use std::collections::{BTreeMap, BTreeSet};
+
+use camino::{Utf8Path, Utf8PathBuf};
+use scruple::evaluate::Outcome;
+use scruple::model::Property;
+use scruple::workspace::{Snapshot, Workspace};
+
+/// The widest window that each kind of value may have in the files: the goals of the project, in the unit written.
+const GOALS: &[(&str, &str, f64)] = &[
+    ("standards_", "pH", 0.02),
+    ("standards_", "ionic strength", 0.001),
+    ("standards_", "buffer capacity", 10.0),
+    ("handbook_", "pH", 0.03),
+    ("density_", "density", 1.25e-3),
+];
+
+/// Above this no goal is set for pH standards; differences there are held where they are.
+const HOTTEST_GOAL_C: f64 = 50.0;
+
+/// Rounding of the recorded differences.
+const SLACK: f64 = 6e-4;
+
+/// Goals not met: the group of values, the worst difference so far in the unit written, and why.
+const NOT_MET: &[(&str, f64, &str)] = &[];
+
+/// Temperature coefficients of the standards, from the pH at 20 °C and 30 °C, must be within this of the printed ones, 1/K:
+/// half a unit of the third decimal over 10 K on either pH, and the last printed digit.
+const COEFFICIENT_WINDOW_PER_K: f64 = 6e-4;
+
+/// One published value beside the program's.
+struct Comparison {
+    group: String,
+    place: String,
+    published: f64,
+    window: f64,
+    computed: Option<f64>,
+}
+
+fn folder() -> Utf8PathBuf {
+    Utf8Path::new(env!("CARGO_MANIFEST_DIR")).join("tests/published")
+}
+
+fn snapshot() -> std::sync::Arc<Snapshot> {
+    let mut workspace = Workspace::new();
+    workspace.open_root(&folder(), &folder());
+    workspace.snapshot()
+}
+
+/// Values that are judged together: a standard of one source, a handbook series, a salt.
+fn group(file: &str, solution: &str, property: &str, celsius: f64) -> String {
+    if file.starts_with("handbook_") {
+        return file.trim_end_matches(".prep").to_owned();
+    }
+    if file.starts_with("density_") {
+        let salt = solution.rsplitn(3, ' ').last().unwrap_or(solution);
+        return format!("density of {}", salt.to_lowercase());
+    }
+    match (property, celsius > HOTTEST_GOAL_C) {
+        ("pH", false) => solution.to_owned(),
+        ("pH", true) => format!("{solution} above 50 °C"),
+        _ => format!("{solution}: {property}"),
+    }
+}
+
+fn comparisons(snapshot: &Snapshot) -> Vec<Comparison> {
+    let mut all = Vec::new();
+    for (file, index, block) in snapshot.solutions() {
+        let name = file.shown_path();
+        let evaluation = &snapshot.checked(file.id, index).expect("every solution is checked").evaluation;
+        let solution = block.name.as_ref().map(|name| name.text.clone()).unwrap_or_default();
+        let recipe = block.recipe().expect("a solution has a recipe");
+        if recipe.expectations.is_empty() {
+            continue;
+        }
+        let outcome: &Outcome = evaluation.outcome().unwrap_or_else(|| panic!("{name}: {solution} has no values: {:?}", evaluation.findings));
+        for verdict in &outcome.verdicts {
+            let written = |value: f64| verdict.unit.map_or(value, |unit| unit.from_base(value));
+            let (low, high) = (written(verdict.low.expect("a window")), written(verdict.high.expect("a window")));
+            let celsius = verdict.temperature_K - 273.15;
+            let property = verdict.property.words();
+            all.push(Comparison {
+                group: group(&name, &solution, &property, celsius),
+                place: format!("{name}: {solution}, {property} at {celsius:.0} °C"),
+                published: 0.5 * (low + high),
+                window: 0.5 * (high - low),
+                computed: verdict.value.map(written),
+            });
+            let goal = GOALS.iter().find(|(prefix, kind, _)| name.starts_with(prefix) && property == *kind);
+            let goal = goal.unwrap_or_else(|| panic!("{name} expects a {property}, for which no goal is set")).2;
+            assert!(0.5 * (high - low) <= goal * (1.0 + 1e-9), "{name}: the window of {solution} is wider than the goal");
+        }
+    }
+    all
+}
+
+#[test]
+fn published_values_are_met() {
+    let snapshot = snapshot();
+    let all = comparisons(&snapshot);
+    let mut groups: BTreeMap<&str, Vec<&Comparison>> = BTreeMap::new();
+    for comparison in &all {
+        groups.entry(&comparison.group).or_default().push(comparison);
+    }
+    let mut wrong = Vec::new();
+    println!("{:52} {:>5} {:>9} {:>9} {:>9}", "", "n", "goal", "largest", "mean");
+    for (group, members) in &groups {
+        let mut worst: Option<(f64, &Comparison)> = None;
+        let (mut sum, mut goal) = (0.0, f64::INFINITY);
+        let mut misses = false;
+        for comparison in members {
+            let Some(computed) = comparison.computed else {
+                wrong.push(format!("{} has no value", comparison.place));
+                continue;
+            };
+            let difference = computed - comparison.published;
+            sum += difference;
+            goal = goal.min(comparison.window);
+            misses |= difference.abs() > comparison.window * (1.0 + 1e-9);
+            if worst.is_none_or(|(size, _)| difference.abs() > size) {
+                worst = Some((difference.abs(), comparison));
+            }
+        }
+        let Some((size, at)) = worst else { continue };
+        let known = NOT_MET.iter().find(|(known, _, _)| known == group);
+        let mark = if misses { "  not met" } else { "" };
+        println!("{group:52} {:5} {goal:9.4} {size:9.4} {:+9.4}{mark}", members.len(), sum / members.len() as f64);
+        match (known, misses) {
+            (None, true) => wrong.push(format!("{}: off by {size:.4}, the goal is {goal}", at.place)),
+            (Some((_, recorded, reason)), _) if size > recorded + SLACK => {
+                wrong.push(format!("{}: off by {size:.4}, worse than the {recorded} recorded ({reason})", at.place));
+            }
+            (Some(_), false) => wrong.push(format!("{group} meets its goal now; take it out of the table")),
+            _ => {}
+        }
+    }
+    for (group, _, _) in NOT_MET {
+        if !groups.contains_key(group) {
+            wrong.push(format!("{group} stands in the table, but nothing is published under that name"));
+        }
+    }
+    assert!(wrong.is_empty(), "{}", wrong.join("\n"));
+}
+
+#[test]
+fn every_published_value_is_judged_and_names_its_source() {
+    let snapshot = snapshot();
+    let (mut lines, mut temperatures, mut files) = (0, BTreeSet::new(), 0);
+    for file in snapshot.files.values() {
+        files += 1;
+        for line in file.source.as_str().lines().filter(|line| line.trim_start().starts_with("expect")) {
+            lines += 1;
+            let (_, source) = line.split_once(" # ").unwrap_or_else(|| panic!("{}: no source on {line}", file.path));
+            assert!(source.trim().len() > 5, "{}: no source on {line}", file.path);
+        }
+    }
+    let all = comparisons(&snapshot);
+    for comparison in &all {
+        temperatures.insert(comparison.place.rsplit(" at ").next().unwrap_or_default().to_owned());
+    }
+    assert_eq!(all.len(), lines, "one judgement for each line");
+    // Not fewer than were collected: 17 files, 187 values of standards, 126 of handbook buffers, 110 of densities.
+    assert!(files >= 17 && lines >= 420, "{files} files with {lines} values");
+    assert!(temperatures.len() >= 20, "{temperatures:?}");
+}
+
+#[test]
+fn temperature_coefficients_are_as_printed() {
+    let snapshot = snapshot();
+    let mut seen = 0;
+    for (file, index, block) in snapshot.solutions() {
+        let name = block.name.as_ref().map(|name| name.text.clone()).unwrap_or_default();
+        let Some(outcome) = snapshot.checked(file.id, index).and_then(|checked| checked.evaluation.outcome().cloned()) else { continue };
+        let pH_at = |celsius: f64| {
+            let found = outcome.uses.iter().find(|(kelvin, _)| (kelvin - 273.15 - celsius).abs() < 1e-6);
+            found.and_then(|(_, state)| state.as_ref().ok()).map(|state| state.pH())
+        };
+        for printed in printed_coefficients(file.source.as_str(), &name) {
+            let (Some(cold), Some(warm)) = (pH_at(20.0), pH_at(30.0)) else { panic!("{name} has no pH at 20 °C and 30 °C") };
+            let computed = (warm - cold) / 10.0;
+            println!("{name:45} {printed:+8.4} {computed:+8.4}");
+            assert!((computed - printed).abs() <= COEFFICIENT_WINDOW_PER_K, "{name}: {computed:.4} per K, printed {printed}");
+            seen += 1;
+        }
+    }
+    assert!(seen >= 10, "{seen} coefficients");
+}
+
+/// The numbers of the notes `dpH/dT …` in the block of a solution.
+fn printed_coefficients(text: &str, solution: &str) -> Vec<f64> {
+    let header = format!("solution {solution}");
+    text.lines()
+        .skip_while(|line| *line != header)
+        .skip(1)
+        .take_while(|line| !line.starts_with("solution "))
+        .filter_map(|line| line.trim_start().strip_prefix("note")?.trim_start().strip_prefix("dpH/dT "))
+        .map(|rest| rest.split(' ').next().unwrap_or_default().parse().expect("a number after dpH/dT"))
+        .collect()
+}
+
+#[test]
+fn the_kinds_of_value_are_all_there() {
+    let snapshot = snapshot();
+    let mut kinds = BTreeSet::new();
+    for (_, _, block) in snapshot.solutions() {
+        let recipe = block.recipe().expect("a solution has a recipe");
+        for expectation in &recipe.expectations {
+            let diluted = if expectation.diluted.is_some() { " diluted" } else { "" };
+            kinds.insert(format!("{}{diluted}", expectation.property.words()));
+            assert!(matches!(
+                expectation.property,
+                Property::Ph | Property::IonicStrength | Property::BufferCapacity | Property::Density
+            ));
+        }
+    }
+    let kinds: Vec<&str> = kinds.iter().map(String::as_str).collect();
+    assert_eq!(kinds, ["buffer capacity", "density", "ionic strength", "pH", "pH diluted"]);
+}
