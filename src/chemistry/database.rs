@@ -205,6 +205,11 @@ impl Chemistry {
         self.tables.species_by_first_part.get(id.0).map_or(&[], Vec::as_slice)
     }
 
+    /// How many components there are.
+    pub(crate) fn component_count(&self) -> usize {
+        self.tables.components.len()
+    }
+
     /// How many species there are.
     pub(crate) fn species_count(&self) -> usize {
         self.tables.species.len()

@@ -27,11 +27,7 @@ fn slope_at(density_kg_per_m3: f64, permittivity: f64, temperature_K: f64) -> f6
 /// Debye–Hückel free energy (Pitzer's definition), with permittivity and compressibility of water.
 pub fn volume_slope(temperature_K: f64) -> f64 {
     let density = water::density_kg_per_m3(temperature_K);
-    let permittivity = water::relative_permittivity_at(density, temperature_K);
-    let step = 1e-3;
-    let d_ln_permittivity = (libm::log(water::relative_permittivity_at(density * (1.0 + step), temperature_K))
-        - libm::log(water::relative_permittivity_at(density * (1.0 - step), temperature_K)))
-        / (2.0 * step);
+    let (permittivity, d_ln_permittivity) = water::permittivity_and_slope(density, temperature_K);
     let osmotic_slope = slope_at(density, permittivity, temperature_K) * core::f64::consts::LN_10 / 3.0;
     2.0 * GAS_CONSTANT_J_per_mol_K
         * temperature_K

@@ -33,14 +33,10 @@ impl<'a> Sensitivity<'a> {
     }
 
     fn adjoint(state: &State) -> Option<(DVector<f64>, DVector<f64>)> {
-        let system = &state.system;
-        let columns = system.counts.ncols();
-        let linear = Linearisation::new(system, &state.point.molalities())?;
-        let mut hydrogen = DVector::zeros(columns);
-        hydrogen[0] = 1.0;
-        let weights = transposed_solve(&linear.jacobian, &hydrogen)?;
-        let to_formation = -transposed_solve(&linear.action, &linear.balance.tr_mul(&weights))?;
-        Some((weights.component_div(&linear.scale_mol), to_formation))
+        let (system, point) = (&state.system, &state.point);
+        let linear = Linearisation::new(system, point, &[])?;
+        let (to_totals, action) = linear.adjoint(system, point, 0)?;
+        Some((to_totals, -action))
     }
 
     /// ∂pH for a unit of this mixture added.
@@ -54,7 +50,7 @@ impl<'a> Sensitivity<'a> {
         }
         // More water in the same proportions is the same as less of every total.
         let water = direction.water_kg / WATER_kg_per_mol / system.water_mol;
-        change -= water * self.to_totals.dot(&system.totals_mol);
+        change -= water * self.to_totals.iter().zip(&system.totals_mol).map(|(d, t)| d * t).sum::<f64>();
         -change / core::f64::consts::LN_10
     }
 
@@ -97,19 +93,4 @@ impl<'a> Sensitivity<'a> {
         }
         change
     }
-}
-
-/// Solves Mᵀ x = b with the factors of M.
-fn transposed_solve(
-    factors: &nalgebra::LU<f64, nalgebra::Dyn, nalgebra::Dyn>,
-    right: &DVector<f64>,
-) -> Option<DVector<f64>> {
-    // P M = L U, so Mᵀ = Uᵀ Lᵀ P.
-    let mut x = right.clone();
-    let (lower, upper) = (factors.l(), factors.u());
-    if !upper.tr_solve_upper_triangular_mut(&mut x) || !lower.tr_solve_lower_triangular_mut(&mut x) {
-        return None;
-    }
-    factors.p().inv_permute_rows(&mut x);
-    Some(x)
 }

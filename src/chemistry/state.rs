@@ -31,6 +31,8 @@ pub struct State {
     pub volume_is_estimated: bool,
     /// Ionic strength, mol/kg of free water.
     pub ionic_strength_mol_per_kg: f64,
+    /// Newton steps that the solution took.
+    pub steps: usize,
     /// What limits the trust in this state.
     pub warnings: Vec<Warning>,
     pub(super) chemistry: Chemistry,
@@ -85,8 +87,8 @@ impl Chemistry {
             return Err(Failure::NoWater { water_kg: mixture.water_kg });
         }
         let system = System::new(self, mixture, temperature_K, settings.model)?;
-        let point = equilibrium::solve(&system, settings.limits)?;
-        Ok(State::new(self.clone(), mixture.clone(), temperature_K, *settings, system, point))
+        let (point, steps) = equilibrium::solve(&system, settings.limits)?;
+        Ok(State::new(self.clone(), mixture.clone(), temperature_K, *settings, system, point, steps))
     }
 }
 
@@ -98,14 +100,14 @@ impl State {
         settings: Settings,
         system: System,
         point: Point,
+        steps: usize,
     ) -> Self {
-        let molality = point.molalities();
-        let ionic_strength_mol_per_kg = system.ionic_strength(&molality);
+        let ionic_strength_mol_per_kg = system.ionic_strength(&point.molality);
         let water_kg = point.water_kg;
         let (solution_L, volume_is_estimated) = volume::volume_L(
             &chemistry,
             water_kg,
-            system.species.iter().zip(molality.iter()).map(|(&id, &m)| (id, m * water_kg)),
+            system.species.iter().zip(&point.molality).map(|(&id, &m)| (id, m * water_kg)),
             ionic_strength_mol_per_kg,
             temperature_K,
         );
@@ -116,6 +118,7 @@ impl State {
             volume_L: solution_L + mixture.inert_volume_L,
             volume_is_estimated,
             ionic_strength_mol_per_kg,
+            steps,
             warnings: Vec::new(),
             chemistry,
             mixture,
@@ -157,8 +160,8 @@ impl State {
         self.system
             .species
             .iter()
-            .zip(self.point.ln_molality.iter().zip(self.point.ln_gamma.iter()))
-            .map(|(&id, (&m, &g))| (id, libm::exp(m), g / core::f64::consts::LN_10))
+            .zip(self.point.molality.iter().zip(&self.point.ln_gamma))
+            .map(|(&id, (&m, &g))| (id, m, g / core::f64::consts::LN_10))
     }
 
     /// Molality of a species, mol/kg; 0 where its components are absent.

@@ -29,40 +29,48 @@ pub fn compressibility_per_Pa(temperature_K: f64) -> f64 {
 
 /// Static relative permittivity at the density of the liquid at 0.1 MPa: IAPWS R8-97 (Fernández et al. 1997).
 pub fn relative_permittivity(temperature_K: f64) -> f64 {
-    relative_permittivity_at(density_kg_per_m3(temperature_K), temperature_K)
+    permittivity_and_slope(density_kg_per_m3(temperature_K), temperature_K).0
 }
 
-/// Static relative permittivity as a function of density (kg/m³) and temperature (K): IAPWS R8-97, equations 1 to 5.
-pub fn relative_permittivity_at(density_kg_per_m3: f64, temperature_K: f64) -> f64 {
-    const TERMS: [(f64, f64, f64); 11] = [
-        (0.978224486826, 1.0, 0.25),
-        (-0.957771379375, 1.0, 1.0),
-        (0.237511794148, 1.0, 2.5),
-        (0.714692244396, 2.0, 1.5),
-        (-0.298217036956, 3.0, 1.5),
-        (-0.108863472196, 3.0, 2.5),
-        (0.949327488264e-1, 4.0, 2.0),
-        (-0.980469816509e-2, 5.0, 2.0),
-        (0.165167634970e-4, 6.0, 5.0),
-        (0.937359795772e-4, 7.0, 0.5),
-        (-0.123179218720e-9, 10.0, 10.0),
-    ];
+/// Static relative permittivity ε as a function of density (kg/m³) and temperature (K), and ∂ ln ε/∂ ln ρ: IAPWS R8-97, equations 1 to 5.
+pub fn permittivity_and_slope(density_kg_per_m3: f64, temperature_K: f64) -> (f64, f64) {
     const AVOGADRO_per_mol: f64 = 6.0221367e23;
     const BOLTZMANN_J_per_K: f64 = 1.380658e-23;
     const VACUUM_PERMITTIVITY_F_per_m: f64 = 8.854187817e-12;
-    const POLARISABILITY: f64 = 1.636e-40;
+    const POLARISABILITY_C2_m2_per_J: f64 = 1.636e-40;
     const DIPOLE_C_m: f64 = 6.138e-30;
     let molar_density = density_kg_per_m3 / MOLAR_MASS_kg_per_mol;
-    let delta = density_kg_per_m3 / 322.0;
-    let tau = 647.096 / temperature_K;
-    let mut g = 1.0 + 0.196096504426e-2 * delta * libm::pow(temperature_K / 228.0 - 1.0, -1.2);
-    for (n, i, j) in TERMS {
-        g += n * libm::pow(delta, i) * libm::pow(tau, j);
-    }
+    let (delta, tau) = (density_kg_per_m3 / 322.0, 647.096 / temperature_K);
+    // Powers by multiplication: this is called for every solution.
+    let (d2, d3) = (delta * delta, delta * delta * delta);
+    let (t2, root) = (tau * tau, libm::sqrt(tau));
+    let t5 = t2 * t2 * tau;
+    let terms = [
+        (0.978224486826 * delta * libm::sqrt(root), 1.0),
+        (-0.957771379375 * delta * tau, 1.0),
+        (0.237511794148 * delta * t2 * root, 1.0),
+        (0.714692244396 * d2 * tau * root, 2.0),
+        (-0.298217036956 * d3 * tau * root, 3.0),
+        (-0.108863472196 * d3 * t2 * root, 3.0),
+        (0.949327488264e-1 * d2 * d2 * t2, 4.0),
+        (-0.980469816509e-2 * d3 * d2 * t2, 5.0),
+        (0.165167634970e-4 * d3 * d3 * t5, 6.0),
+        (0.937359795772e-4 * d3 * d3 * delta * root, 7.0),
+        (-0.123179218720e-9 * d3 * d3 * d3 * delta * t5 * t5, 10.0),
+        (0.196096504426e-2 * delta * libm::pow(temperature_K / 228.0 - 1.0, -1.2), 1.0),
+    ];
+    let g = 1.0 + terms.iter().map(|(term, _)| term).sum::<f64>();
+    let dg = terms.iter().map(|(term, power)| term * power).sum::<f64>();
     let a = AVOGADRO_per_mol * DIPOLE_C_m * DIPOLE_C_m * molar_density * g
         / (VACUUM_PERMITTIVITY_F_per_m * BOLTZMANN_J_per_K * temperature_K);
-    let b = AVOGADRO_per_mol * POLARISABILITY * molar_density / (3.0 * VACUUM_PERMITTIVITY_F_per_m);
-    (1.0 + a + 5.0 * b + libm::sqrt(9.0 + 2.0 * a + 18.0 * b + a * a + 10.0 * a * b + 9.0 * b * b)) / (4.0 - 4.0 * b)
+    let b = AVOGADRO_per_mol * POLARISABILITY_C2_m2_per_J * molar_density / (3.0 * VACUUM_PERMITTIVITY_F_per_m);
+    let root = libm::sqrt(9.0 + 2.0 * a + 18.0 * b + a * a + 10.0 * a * b + 9.0 * b * b);
+    let permittivity = (1.0 + a + 5.0 * b + root) / (4.0 - 4.0 * b);
+    // Derivatives with respect to ln ρ.
+    let (da, db) = (a * (1.0 + dg / g), b);
+    let droot = ((1.0 + a + 5.0 * b) * da + (9.0 + 5.0 * a + 9.0 * b) * db) / root;
+    let slope = (da + 5.0 * db + droot) / (4.0 - 4.0 * b) / permittivity + db / (1.0 - b);
+    (permittivity, slope)
 }
 
 /// pKw on the molality scale at the density of the liquid at 0.1 MPa: IAPWS R11-07 (Bandura & Lvov 2006).

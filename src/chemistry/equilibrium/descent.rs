@@ -8,107 +8,86 @@ use nalgebra::{DMatrix, DVector};
 use super::system::{Point, System};
 
 /// Relative residual at which Newton's method on the whole system takes over.
-const NEAR: f64 = 1e-3;
+const NEAR: f64 = 1e-2;
 /// Steps of one call.
-const STEPS: usize = 120;
+const STEPS: usize = 150;
 /// Largest change of one logarithm in a step.
 const STRIDE: f64 = 30.0;
 
 /// Brings the balances near zero; false if the steps run out.
 pub(crate) fn settle(system: &System, point: &mut Point, budget: &mut usize) -> bool {
-    let target = &system.totals_mol / point.water_kg;
-    point.ln_molality = system.mass_action(point);
-    let mut molality = point.molalities();
+    let target = DVector::from_iterator(system.totals_mol.len(), system.totals_mol.iter().map(|t| t / point.water_kg));
+    system.apply_mass_action(point);
     for _ in 0..STEPS {
-        let (gradient, scale) = gradient(system, &molality, &target);
-        let near = gradient.iter().zip(scale.iter()).all(|(g, s)| g.abs() <= NEAR * s);
-        if near {
+        let (sum, mut scale) = system.balances(&point.molality);
+        let gradient = sum - &target;
+        scale.zip_apply(&target, |s, t| *s = s.max(t.abs()));
+        if gradient.iter().zip(scale.iter()).all(|(g, s)| g.abs() <= NEAR * s) {
             return true;
         }
         if *budget == 0 {
             return false;
         }
         *budget -= 1;
-        let Some(mut step) = newton_step(system, &molality, &gradient, &scale) else { return false };
-        let longest = step.iter().fold(0.0_f64, |a, x| a.max(x.abs()));
+        let Some(mut step) = newton_step(system, &point.molality, &gradient, &scale) else { return false };
+        let longest = step.amax();
         if !longest.is_finite() {
             return false;
         }
         if longest > STRIDE {
             step *= STRIDE / longest;
         }
-        let before = potential(&molality, point, &target);
+        let before = potential(point, &target);
         let descent = gradient.dot(&step);
-        let mut trial = point.clone();
+        let start = point.ln_activity.clone();
         let mut share = 1.0;
         for _ in 0..40 {
-            trial.ln_activity = &point.ln_activity + &step * share;
-            trial.ln_molality = system.mass_action(&trial);
-            molality = trial.molalities();
-            let after = potential(&molality, &trial, &target);
-            if after <= before + 1e-4 * share * descent + 1e-14 * before.abs() {
+            for ((x, from), by) in point.ln_activity.iter_mut().zip(&start).zip(step.iter()) {
+                *x = from + share * by;
+            }
+            system.apply_mass_action(point);
+            if potential(point, &target) <= before + 1e-4 * share * descent + 1e-14 * before.abs() {
                 break;
             }
             share *= 0.3;
         }
-        *point = trial;
     }
     false
-}
-
-/// The balances and, for each, the sum of what takes part in it.
-fn gradient(system: &System, molality: &DVector<f64>, target: &DVector<f64>) -> (DVector<f64>, DVector<f64>) {
-    let mut gradient = -target;
-    let mut scale = target.abs();
-    for column in 0..system.counts.ncols() {
-        let mut size = 0.0;
-        for row in 0..system.counts.nrows() {
-            let part = system.counts[(row, column)] * molality[row];
-            gradient[column] += part;
-            size += part.abs();
-        }
-        scale[column] = scale[column].max(size);
-    }
-    (gradient, scale)
 }
 
 /// −H⁻¹ g with the rows and columns of the Hessian brought to a common size.
 fn newton_step(
     system: &System,
-    molality: &DVector<f64>,
+    molality: &[f64],
     gradient: &DVector<f64>,
     scale: &DVector<f64>,
 ) -> Option<DVector<f64>> {
-    let size = system.counts.ncols();
+    let size = gradient.len();
     let mut hessian = DMatrix::<f64>::zeros(size, size);
-    for row in 0..system.counts.nrows() {
-        let m = molality[row];
-        for j in 0..size {
-            let part = system.counts[(row, j)] * m;
-            if part != 0.0 {
-                for k in j..size {
-                    hessian[(j, k)] += part * system.counts[(row, k)];
-                }
+    for (row, m) in molality.iter().enumerate() {
+        for &(j, count_j) in system.parts(row) {
+            for &(k, count_k) in system.parts(row) {
+                hessian[(j, k)] += m * count_j * count_k;
             }
         }
     }
     let root = DVector::from_fn(size, |j, _| libm::sqrt(hessian[(j, j)].max(1e-14 * scale[j])));
     for j in 0..size {
-        hessian[(j, j)] = (hessian[(j, j)] / (root[j] * root[j])).max(1.0);
-        for k in j + 1..size {
+        for k in 0..size {
             hessian[(j, k)] /= root[j] * root[k];
-            hessian[(k, j)] = hessian[(j, k)];
         }
+        // A diagonal below one belongs to a balance that nothing answers to; it then moves little.
+        hessian[(j, j)] = hessian[(j, j)].max(1.0);
     }
-    let right = DVector::from_fn(size, |j, _| -gradient[j] / root[j]);
-    let mut step = hessian.lu().solve(&right)?;
-    for j in 0..size {
-        step[j] /= root[j];
+    let mut step = DVector::from_fn(size, |j, _| -gradient[j] / root[j]);
+    if !hessian.lu().solve_mut(&mut step) {
+        return None;
     }
+    step.component_div_assign(&root);
     Some(step)
 }
 
 /// Φ.
-fn potential(molality: &DVector<f64>, point: &Point, target: &DVector<f64>) -> f64 {
-    molality.sum() - target.dot(&point.ln_activity)
+fn potential(point: &Point, target: &DVector<f64>) -> f64 {
+    point.molality.iter().sum::<f64>() - target.iter().zip(&point.ln_activity).map(|(t, x)| t * x).sum::<f64>()
 }

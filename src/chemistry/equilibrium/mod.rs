@@ -6,6 +6,7 @@
 
 #![allow(clippy::indexing_slicing, reason = "matrices are indexed by the sizes they were made with, never by input")]
 
+pub(crate) mod action;
 pub(crate) mod descent;
 pub(crate) mod guess;
 pub(crate) mod newton;
@@ -30,15 +31,15 @@ impl Default for Limits {
 /// Largest relative mass-balance residual of a solution.
 pub(crate) const RESIDUAL: f64 = 1e-10;
 
-/// Solves a system.
-pub(crate) fn solve(system: &System, limits: Limits) -> Result<Point, Failure> {
+/// Solves a system; also tells how many Newton steps it took.
+pub(crate) fn solve(system: &System, limits: Limits) -> Result<(Point, usize), Failure> {
     let mut budget = limits.steps;
     let mut point = guess::start(system);
     if direct(system, &mut point, &mut budget) {
-        return Ok(point);
+        return Ok((point, limits.steps - budget));
     }
     if let Some(point) = continuation(system, &mut budget) {
-        return Ok(point);
+        return Ok((point, limits.steps - budget));
     }
     let residual = system.residual(&point);
     Err(Failure::NotConverged {

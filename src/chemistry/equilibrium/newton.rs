@@ -6,146 +6,158 @@
 use nalgebra::{DMatrix, DVector, Dyn, LU};
 
 use super::RESIDUAL;
+use super::action::Action;
 use super::system::{Point, System};
-use crate::chemistry::water::MOLAR_MASS_kg_per_mol as WATER_kg_per_mol;
 
 /// Steps of one call.
 const STEPS: usize = 60;
 /// Largest change of a logarithm in one step.
 const STRIDE: f64 = 4.0;
+/// A step this small is squared by the next, so that the point after it is the solution to all digits.
+const CALM: f64 = 1e-6;
 
 /// The linearised equations at a point.
 pub(crate) struct Linearisation {
-    /// Q: ∂(mass action)/∂μ, factored.
-    pub action: LU<f64, Dyn, Dyn>,
-    /// ∂(balance)/∂μ, one row for each balance, divided by its size.
-    pub balance: DMatrix<f64>,
+    /// The laws of mass action.
+    pub action: Action,
     /// ∂(balance)/∂λ after elimination, divided by its size, factored.
     pub jacobian: LU<f64, Dyn, Dyn>,
-    /// Q⁻¹ A.
-    pub response: DMatrix<f64>,
+    /// Q⁻¹ A, and Q⁻¹ e in the last column.
+    response: DMatrix<f64>,
     /// Size of each balance, mol.
     pub scale_mol: DVector<f64>,
-    /// Sum of each balance, mol.
-    pub sum_mol: DVector<f64>,
-    /// ln γ and ln a_w at the molalities of the point.
-    pub ln_gamma: DVector<f64>,
-    pub ln_water_activity: f64,
-    pub water_kg: f64,
+    /// Sum of each balance, mol/kg.
+    sum_mol_per_kg: DVector<f64>,
+    /// Share of the water that is free.
+    free_share: f64,
 }
 
 impl Linearisation {
-    /// Linearises the equations at the molalities of a point; `None` if they leave no water or are not finite.
-    pub fn new(system: &System, molality: &DVector<f64>) -> Option<Self> {
+    /// Linearises the equations at a point, whose free water must be that of its molalities. `error` is e. `None` if singular.
+    pub fn new(system: &System, point: &Point, error: &[f64]) -> Option<Self> {
         let (rows, columns) = system.counts.shape();
-        let (ln_gamma, ln_water_activity) = system.activities(molality);
-        let water_kg = system.free_water_kg(molality)?;
-        let term = system.model.ionic_term(system.slope, system.ionic_strength(molality));
-        // ∂ ln γᵢ/∂mₖ, then ∂ ln a_w/∂mₖ by Gibbs–Duhem.
-        let half_slope = 0.5 * term.slope_kg_per_mol;
-        let mut action = DMatrix::from_fn(rows, rows, |i, k| {
-            let (zi, zk) = (system.charge[i], system.charge[k]);
-            -half_slope * zi * zi * zk * zk
-        });
-        for &(i, j, epsilon) in &system.interactions {
-            action[(i, j)] += epsilon;
-            if i != j {
-                action[(j, i)] += epsilon;
-            }
+        let action = Action::new(system, &point.molality);
+        let mut response = system.counts.clone().resize_horizontally(columns + 1, 0.0);
+        for (row, e) in error.iter().enumerate() {
+            response[(row, columns)] = *e;
         }
-        for k in 0..rows {
-            let mut column_sum = 1.0;
-            for i in 0..rows {
-                column_sum += molality[i] * action[(i, k)];
-            }
-            let water_slope = -WATER_kg_per_mol * column_sum;
-            for i in 0..rows {
-                action[(i, k)] = (action[(i, k)] - system.water[i] * water_slope) * molality[k];
-            }
-            action[(k, k)] += 1.0;
+        if !action.solve(&mut response) {
+            return None;
         }
-        let action = action.lu();
-        let response = action.solve(&system.counts)?;
-        let mut sum_mol = DVector::zeros(columns);
-        let mut scale_mol = DVector::zeros(columns);
-        for column in 0..columns {
-            let (mut sum, mut size) = (0.0, 0.0);
-            for row in 0..rows {
-                let part = system.counts[(row, column)] * molality[row] * water_kg;
-                sum += part;
-                size += part.abs();
-            }
-            sum_mol[column] = sum;
-            scale_mol[column] = size.max(system.totals_mol[column].abs());
-        }
-        let mut balance = DMatrix::zeros(columns, rows);
-        let water_share = water_kg / system.water_mol;
-        for row in 0..rows {
-            for column in 0..columns {
-                balance[(column, row)] = molality[row]
-                    * (system.counts[(row, column)] * water_kg - sum_mol[column] * water_share * system.water[row])
-                    / scale_mol[column];
-            }
-        }
-        let mut jacobian = DMatrix::zeros(columns, columns);
-        for row in 0..rows {
-            for j in 0..columns {
-                let b = balance[(j, row)];
-                for k in 0..columns {
-                    jacobian[(j, k)] += b * response[(row, k)];
-                }
-            }
-        }
-        Some(Self {
+        let (sum_mol_per_kg, size) = system.balances(&point.molality);
+        let scale_mol =
+            DVector::from_fn(columns, |j, _| (size[j] * point.water_kg).max(system.totals_mol[j].abs()));
+        let free_share = point.water_kg / system.water_mol;
+        let mut result = Self {
             action,
-            balance,
-            jacobian: jacobian.lu(),
+            jacobian: DMatrix::zeros(0, 0).lu(),
             response,
             scale_mol,
-            sum_mol,
-            ln_gamma,
-            ln_water_activity,
-            water_kg,
-        })
+            sum_mol_per_kg,
+            free_share,
+        };
+        let mut jacobian = DMatrix::zeros(columns, columns);
+        for row in 0..rows {
+            result.each_balance(system, point, row, |j, share| {
+                for k in 0..columns {
+                    jacobian[(j, k)] += share * result.response[(row, k)];
+                }
+            });
+        }
+        result.jacobian = jacobian.lu();
+        Some(result)
+    }
+
+    /// Calls `f` with every balance that answers to ln m of a species, and the derivative divided by the size of the balance.
+    fn each_balance(&self, system: &System, point: &Point, row: usize, mut f: impl FnMut(usize, f64)) {
+        let amount_mol = point.molality[row] * point.water_kg;
+        for &(column, count) in system.parts(row) {
+            f(column, count * amount_mol / self.scale_mol[column]);
+        }
+        // Water that a species binds or releases changes all molalities.
+        let water = system.water[row] * self.free_share * amount_mol;
+        if water != 0.0 {
+            for column in 0..self.scale_mol.len() {
+                f(column, -water * self.sum_mol_per_kg[column] / self.scale_mol[column]);
+            }
+        }
+    }
+
+    /// The Newton step in λ and μ; `None` if singular.
+    fn step(&self, system: &System, point: &Point) -> Option<(DVector<f64>, DVector<f64>)> {
+        let (rows, columns) = system.counts.shape();
+        let mut step = DVector::from_fn(columns, |j, _| {
+            (system.totals_mol[j] - self.sum_mol_per_kg[j] * point.water_kg) / self.scale_mol[j]
+        });
+        for row in 0..rows {
+            let settled = self.response[(row, columns)];
+            self.each_balance(system, point, row, |j, share| step[j] += share * settled);
+        }
+        if !self.jacobian.solve_mut(&mut step) {
+            return None;
+        }
+        let mut change = DVector::from_fn(rows, |row, _| -self.response[(row, columns)]);
+        for column in 0..columns {
+            for row in 0..rows {
+                change[row] += self.response[(row, column)] * step[column];
+            }
+        }
+        Some((step, change))
+    }
+
+    /// The weights of a row of the inverse of the whole system: those of the balances (1/mol), and of the laws of mass action.
+    pub fn adjoint(&self, system: &System, point: &Point, column: usize) -> Option<(DVector<f64>, DVector<f64>)> {
+        let (rows, columns) = system.counts.shape();
+        let mut weights = DVector::zeros(columns);
+        weights[column] = 1.0;
+        if !super::action::solve_transposed(&self.jacobian, &mut weights) {
+            return None;
+        }
+        let mut action = DVector::zeros(rows);
+        for row in 0..rows {
+            self.each_balance(system, point, row, |j, share| action[row] += share * weights[j]);
+        }
+        if !self.action.solve_transposed(&mut action) {
+            return None;
+        }
+        weights.component_div_assign(&self.scale_mol);
+        Some((weights, action))
     }
 }
 
 /// Iterates from a point near the solution; false if it does not get there.
 pub(crate) fn finish(system: &System, point: &mut Point, budget: &mut usize) -> bool {
-    let mut calm = false;
+    let mut error = vec![0.0; system.species.len()];
+    let mut longest = f64::INFINITY;
     for _ in 0..STEPS {
-        let molality = point.molalities();
-        let Some(linear) = Linearisation::new(system, &molality) else { return false };
-        point.ln_gamma.copy_from(&linear.ln_gamma);
-        point.ln_water_activity = linear.ln_water_activity;
-        point.water_kg = linear.water_kg;
-        let error = &point.ln_molality - system.mass_action(point);
-        let residual = (&linear.sum_mol - &system.totals_mol).component_div(&linear.scale_mol);
-        let worst = residual.iter().fold(0.0_f64, |a, x| a.max(x.abs()));
-        let action_error = error.iter().fold(0.0_f64, |a, x| a.max(x.abs()));
-        if !(worst.is_finite() && action_error.is_finite()) {
-            return false;
+        let Some(water_kg) = system.free_water_kg(&point.molality) else { return false };
+        point.water_kg = water_kg;
+        point.ln_water_activity = system.activities(&point.molality, &mut point.ln_gamma);
+        for row in 0..error.len() {
+            error[row] = point.ln_molality[row] - system.mass_action(point, row);
         }
-        if calm && worst < RESIDUAL && action_error < RESIDUAL {
+        if longest < CALM && error.iter().all(|e| e.abs() < RESIDUAL) && system.residual(point) < RESIDUAL {
             return true;
         }
         if *budget == 0 {
             return false;
         }
         *budget -= 1;
-        let Some(settled) = linear.action.solve(&error) else { return false };
-        let right = &linear.balance * &settled - residual;
-        let Some(step) = linear.jacobian.solve(&right) else { return false };
-        let change = &linear.response * &step - settled;
-        let longest = change.iter().chain(step.iter()).fold(0.0_f64, |a, x| a.max(x.abs()));
-        if !longest.is_finite() {
+        let Some(linear) = Linearisation::new(system, point, &error) else { return false };
+        let Some((step, change)) = linear.step(system, point) else { return false };
+        longest = change.amax().max(step.amax());
+        // `amax` passes over NaN; the sums do not.
+        if !(longest.is_finite() && step.sum().is_finite() && change.sum().is_finite()) {
             return false;
         }
-        // A step this small is squared by the next, so the point after it is the solution.
-        calm = longest < 1e-6;
         let share = if longest > STRIDE { STRIDE / longest } else { 1.0 };
-        point.ln_activity.axpy(share, &step, 1.0);
-        point.ln_molality.axpy(share, &change, 1.0);
+        for (x, by) in point.ln_activity.iter_mut().zip(step.iter()) {
+            *x += share * by;
+        }
+        for (x, by) in point.ln_molality.iter_mut().zip(change.iter()) {
+            *x += share * by;
+        }
+        point.exponentiate();
     }
     false
 }

@@ -1,4 +1,10 @@
 //! Checks of the core against published values and against itself.
 
+mod activity;
 mod laboratory;
+mod random;
+mod refusals;
+mod roots;
 mod standards;
+mod volume;
+mod water;
