@@ -2,7 +2,7 @@
 repetition outside, the osmotic integral by quadrature.
 
 Model: mass action on the molality scale; specific ion interaction theory with B·a = 1.5 (Grenthe et al. 1992); activity of
-water by Gibbs-Duhem; hydroxide takes a molecule of water.
+water by Gibbs-Duhem; hydroxide and some complexes take or set free water.
 """
 
 import math
@@ -39,7 +39,7 @@ class System:
                 continue
             if all(part in self.names for part in species.parts):
                 charge = species.hydrogen + sum(library.charges[p] * n for p, n in species.parts.items())
-                add(species.name, species.parts, species.hydrogen, species.log_beta(kelvin), charge, 0)
+                add(species.name, species.parts, species.hydrogen, species.log_beta(kelvin), charge, species.water)
         self.rows, self.labels = np.array(rows, float), labels
         self.ln_beta, self.charge = np.array(betas), np.array(charges, float)
         self.water = np.array(waters, float)

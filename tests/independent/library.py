@@ -38,12 +38,13 @@ class Constant:
 
 @dataclass
 class Species:
-    """A dissolved species: how many hydrogen ions and which ions it is made of; log10 beta as signed constants."""
+    """A dissolved species: which ions, how many hydrogen ions and how much water it takes; log10 beta as signed constants."""
 
     name: str
     parts: dict
     hydrogen: int
     constants: list = field(default_factory=list)  # (factor, Constant)
+    water: int = 0
 
     def log_beta(self, kelvin):
         return sum(factor * constant.at(kelvin) for factor, constant in self.constants)
@@ -134,9 +135,11 @@ def read_ion(name, statements, library):
         else:
             step = Constant(ionisation.log_k, -ionisation.enthalpy_kj, -ionisation.heat_capacity_j)
         constants.append((1, step))
-        library.species.append(Species(acid or f"{name} + {protons} H", {name: 1}, protons, list(constants)))
+        waters = [int(number(m[1])) for f in fields if (m := re.fullmatch(r"([+\-−]?\d+) water", f))]
+        label = acid or f"{name} + {protons} H"
+        library.species.append(Species(label, {name: 1}, protons, list(constants), sum(waters)))
     for fields in complexes:
-        parts, hydrogen, label, log_k, own = {}, 0, None, None, 1
+        parts, hydrogen, label, log_k, own, bound_water = {}, 0, None, None, 1, None
         for text in fields:
             if text.startswith("named "):
                 label = text[6:]
@@ -150,10 +153,15 @@ def read_ion(name, statements, library):
                 count, part = counted(text)
                 if part == "hydrogen":
                     hydrogen += count
+                elif part == "water":
+                    bound_water = (bound_water or 0) + count
                 else:
                     parts[part] = parts.get(part, 0) + count
         parts[name] = parts.get(name, 0) + own
-        library.species.append(Species(label or "complex of " + name, parts, hydrogen, [(1, log_k)]))
+        if bound_water is None:
+            # A hydrogen ion that is split off leaves a hydroxide, which took a molecule of water.
+            bound_water = max(0, -hydrogen)
+        library.species.append(Species(label or "complex of " + name, parts, hydrogen, [(1, log_k)], bound_water))
     for fields in interactions:
         own = next((f[3:] for f in fields if f.startswith("of ")), name)
         value = next(f for f in fields[1:] if re.match(NUMBER, f))
