@@ -9,6 +9,7 @@ use tower_lsp::lsp_types::{
 };
 
 use super::from_proto;
+use super::library::Pages;
 use crate::text::Columns;
 
 /// What was agreed with the client when the conversation began.
@@ -42,8 +43,8 @@ pub struct Session {
     pub refresh_hints: bool,
     /// The client watches files for us when asked to.
     pub watches_files: bool,
-    /// The client opens `scruple-library:` addresses with `scruple/libraryText`.
-    pub opens_library: bool,
+    /// The pages of the built-in library and of the findings, as this client opens them.
+    pub pages: Pages,
 }
 
 impl Session {
@@ -78,7 +79,7 @@ impl Session {
                 .did_change_watched_files
                 .and_then(|watch| watch.dynamic_registration)
                 .unwrap_or_default(),
-            opens_library: announces_library(client),
+            pages: Pages::new(announces_library(client)),
         }
     }
 
@@ -186,7 +187,7 @@ mod tests {
     fn a_client_that_announces_nothing_gets_the_plain_protocol() {
         let session = session(json!({ "capabilities": {} }));
         assert_eq!(session.columns, Columns::Utf16);
-        assert!(!session.markdown_hover && !session.snippets && !session.watches_files && !session.opens_library);
+        assert!(!session.markdown_hover && !session.snippets && !session.watches_files);
         assert_eq!(session.folders.len(), 1, "the current folder");
     }
 
@@ -231,7 +232,8 @@ mod tests {
                 "experimental": { "scrupleLibrary": true },
             },
         }));
-        assert!(session.markdown_hover && session.opens_library && !session.snippets);
+        assert!(session.markdown_hover && !session.snippets);
+        assert_eq!(session.pages.uri("x.prep").unwrap().scheme(), "scruple-library");
         assert_eq!(session.columns, Columns::Utf8);
     }
 }

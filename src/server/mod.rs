@@ -1,7 +1,8 @@
 //! The language server over stdio: the only room that names tower_lsp, lsp_types and tokio.
 //!
 //! A message takes this way: `framing` reads it, `serve` runs its first step in order of arrival, `language_server` converts
-//! it, `world` owns what it changes or asks a pool to answer it from a snapshot, `to_proto` converts what comes back.
+//! it, `world` takes it to the `owner` of all state or to a pool that answers from a snapshot, `to_proto` converts what comes
+//! back.
 
 mod capabilities;
 mod documents;
@@ -9,10 +10,13 @@ mod framing;
 mod from_proto;
 mod guard;
 mod language_server;
+mod library;
 mod log;
+mod owner;
 mod publish;
 mod serve;
 mod to_proto;
+mod view;
 mod watchdog;
 mod world;
 
@@ -31,7 +35,13 @@ pub fn run(log: Option<&Path>) -> io::Result<i32> {
         log::open(path)?;
     }
     guard::install_hook();
-    let (service, socket) = LspService::build(language_server::Server::new).finish();
+    // The threads that build snapshots are the process's shared ones, which by default have little stack.
+    let built = rayon::ThreadPoolBuilder::new().stack_size(world::STACK).build_global();
+    if let Err(error) = built {
+        log::write(format_args!("the threads that compute stay as they are: {error}"));
+    }
+    let service = LspService::build(language_server::Server::new);
+    let (service, socket) = service.custom_method("scruple/libraryText", language_server::Server::library_text).finish();
     let runtime = tokio::runtime::Builder::new_multi_thread().worker_threads(2).enable_time().build()?;
     let ending = runtime.block_on(serve::serve(service, socket, io::stdin(), io::stdout()));
     runtime.shutdown_background();

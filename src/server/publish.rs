@@ -1,5 +1,5 @@
-//! What the client has been told of each open text. Findings are pushed, never offered for pulling: every client takes
-//! pushed ones, and a client that got both would show each finding twice.
+//! What the client has been told of each text. Findings are pushed, never offered for pulling: every client takes pushed
+//! ones, and a client that got both would show each finding twice.
 
 use std::collections::HashMap;
 
@@ -10,7 +10,7 @@ use tower_lsp::lsp_types::{Diagnostic, Url};
 /// What was published last, by address.
 pub struct Published {
     client: Client,
-    last: HashMap<Url, (i32, Vec<Diagnostic>)>,
+    last: HashMap<Url, (Option<i32>, Vec<Diagnostic>)>,
 }
 
 impl Published {
@@ -22,19 +22,31 @@ impl Published {
     /// Tells the client the findings of a version, unless it knows them already. Each version is told, clean ones too: some
     /// clients wait for it, and findings of an earlier conversation must vanish.
     pub fn publish(&mut self, uri: &Url, version: i32, findings: Vec<Diagnostic>) {
-        let told = (version, findings);
-        if self.last.get(uri) == Some(&told) {
-            return;
+        let told = (Some(version), findings);
+        if self.last.get(uri) != Some(&told) {
+            self.last.insert(uri.clone(), told.clone());
+            self.send(uri, told);
         }
-        let findings = told.1.clone();
-        self.last.insert(uri.clone(), told);
-        // The channel to the client is drained whatever the client does, so this waits for nobody outside.
-        block_on(self.client.publish_diagnostics(uri.clone(), findings, Some(version)));
+    }
+
+    /// Tells the client the findings of a file that it need not have open; a file that never had any is not mentioned.
+    pub fn publish_file(&mut self, uri: &Url, findings: Vec<Diagnostic>) {
+        let told = (None, findings);
+        let known = self.last.get(uri).map_or(told.1.is_empty(), |last| *last == told);
+        if !known {
+            self.last.insert(uri.clone(), told.clone());
+            self.send(uri, told);
+        }
     }
 
     /// A closed text has no findings any more.
     pub fn clear(&mut self, uri: &Url) {
         self.last.remove(uri);
-        block_on(self.client.publish_diagnostics(uri.clone(), Vec::new(), None));
+        self.send(uri, (None, Vec::new()));
+    }
+
+    fn send(&self, uri: &Url, (version, findings): (Option<i32>, Vec<Diagnostic>)) {
+        // The channel to the client is drained whatever the client does, so this waits for nobody outside.
+        block_on(self.client.publish_diagnostics(uri.clone(), findings, version));
     }
 }

@@ -1,49 +1,55 @@
-//! The one thread that owns what is known: open texts, files, and the snapshot made of them.
+//! The handlers' end of the world: events go in, answers come out.
 //!
-//! Handlers only push events, before their first wait, so events arrive here in the client's order. The owner takes all
-//! that have arrived, works the changes in, makes one snapshot for the newest state, hands questions with that snapshot to a
-//! pool, and publishes findings. Nobody else publishes, and what has been overtaken by a newer change is not published, so
-//! findings never go back in time.
+//! Handlers only push events, before their first wait, so events reach the owner (see `owner`) in the client's order.
 
 use std::sync::Arc;
-use std::sync::mpsc::{Receiver, Sender, channel};
+use std::sync::mpsc::{Sender, channel};
 use std::thread;
 
 use camino::{Utf8Path, Utf8PathBuf};
-use rayon::{ThreadPool, ThreadPoolBuilder};
 use tower_lsp::Client;
 use tower_lsp::jsonrpc::{Error, ErrorCode, Result};
 use tower_lsp::lsp_types::{TextDocumentContentChangeEvent, TextDocumentItem, Url};
 
 use super::capabilities::Session;
-use super::documents::{Document, Documents, Revisions};
+use super::documents::Revisions;
 use super::guard::{Fault, guarded};
-use super::publish::Published;
+use super::owner::Owner;
+use super::view::View;
 use super::{from_proto, log};
-use crate::text::SourceText;
 
 /// Stack of the threads that compute: the parser recurses, and must reach its own limit first.
-const STACK: usize = 16 * 1024 * 1024;
+pub const STACK: usize = 16 * 1024 * 1024;
 
 /// What the client did.
+#[allow(missing_docs, reason = "the fields are the protocol's")]
 pub enum Event {
     /// Opened a text.
     Open { path: Utf8PathBuf, revision: u64, item: TextDocumentItem },
     /// Changed an open text.
     Change { path: Utf8PathBuf, revision: u64, version: i32, changes: Vec<TextDocumentContentChangeEvent> },
+    /// Saved an open text.
+    Save,
     /// Closed a text.
     Close { path: Utf8PathBuf },
+    /// Opened folders.
+    Folders(Vec<Utf8PathBuf>),
+    /// Saw files change on disk.
+    Disk(Vec<Utf8PathBuf>),
     /// Asked something.
     Question(Question),
 }
 
 /// A question about one text, to be answered from a snapshot.
 pub struct Question {
-    path: Utf8PathBuf,
+    /// The text.
+    pub path: Utf8PathBuf,
     /// The change after which it was asked.
-    revision: u64,
-    kind: Kind,
-    answer: Box<dyn FnOnce(std::result::Result<&View, Overtaken>) + Send>,
+    pub revision: u64,
+    /// What becomes of it when the text changes.
+    pub kind: Kind,
+    /// Computes and sends the answer.
+    pub answer: Box<dyn FnOnce(std::result::Result<&View, Refusal>) + Send>,
 }
 
 /// What a change that comes after a question does to its answer.
@@ -55,17 +61,13 @@ pub enum Kind {
     Typing,
 }
 
-/// The text was changed before the question could be answered.
-#[derive(Clone, Copy, Debug)]
-pub struct Overtaken;
-
-/// What is known at one moment; never changes.
-#[derive(Clone)]
-pub struct View {
-    /// What was agreed with the client.
-    pub session: Arc<Session>,
-    /// The texts that are open.
-    pub documents: Arc<Documents>,
+/// Why there is no answer.
+#[derive(Clone, Debug)]
+pub enum Refusal {
+    /// The text was changed before the question could be answered.
+    Overtaken,
+    /// A fault of our own.
+    Fault(Fault),
 }
 
 /// The handlers' end: events in, answers out.
@@ -81,17 +83,11 @@ impl World {
     pub fn start(session: Session, client: Client) -> World {
         let (events, arriving) = channel();
         let world = World { events, revisions: Revisions::default(), session: Arc::new(session) };
-        let owner = Owner {
-            arriving,
-            revisions: world.revisions.clone(),
-            session: Arc::clone(&world.session),
-            documents: Arc::default(),
-            published: Published::new(client),
-            pool: pool(),
-        };
+        let owner = Owner::new(arriving, world.revisions.clone(), Arc::clone(&world.session), client);
         if let Err(error) = thread::Builder::new().name("world".into()).stack_size(STACK).spawn(move || owner.run()) {
             log::write(format_args!("no thread for the world: {error}"));
         }
+        world.push(Event::Folders(world.session.folders.clone()));
         world
     }
 
@@ -121,6 +117,21 @@ impl World {
         self.push(Event::Close { path });
     }
 
+    /// The client saved a text.
+    pub fn save(&self) {
+        self.push(Event::Save);
+    }
+
+    /// The client opened folders.
+    pub fn folders(&self, folders: impl Iterator<Item = Url>) {
+        self.push(Event::Folders(folders.filter_map(|uri| from_proto::file_path(&uri)).collect()));
+    }
+
+    /// The client saw files change on disk.
+    pub fn disk(&self, files: impl Iterator<Item = Url>) {
+        self.push(Event::Disk(files.filter_map(|uri| from_proto::file_path(&uri)).collect()));
+    }
+
     /// Asks something about a text. The question is in its place among the changes when this returns; only the answer is
     /// waited for.
     ///
@@ -136,16 +147,11 @@ impl World {
         let revision = self.revisions.latest(&path);
         let (reply, answer) = tokio::sync::oneshot::channel();
         let asked = path.clone();
-        let work = move |view: std::result::Result<&View, Overtaken>| {
+        let work = move |view: std::result::Result<&View, Refusal>| {
             // A client that has cancelled no longer waits; its answer need not be computed.
-            if reply.is_closed() {
-                return;
+            if !reply.is_closed() {
+                let _ = reply.send(view.and_then(|view| guarded(|| compute(view, &asked)).map_err(Refusal::Fault)));
             }
-            let computed = match view {
-                Ok(view) => guarded(|| compute(view, &asked)).map_err(Refusal::Fault),
-                Err(Overtaken) => Err(Refusal::Overtaken),
-            };
-            let _ = reply.send(computed);
         };
         self.push(Event::Question(Question { path: path.clone(), revision, kind, answer: Box::new(work) }));
         let revisions = self.revisions.clone();
@@ -161,9 +167,11 @@ impl World {
         }
     }
 
+    /// The path that an address stands for; see [`super::library`] for those of pages.
     fn path(&self, uri: &Url) -> Utf8PathBuf {
         let folder = self.session.folders.first().map_or(Utf8Path::new("/"), |folder| folder.as_path());
-        from_proto::path(uri, folder)
+        let path = from_proto::path(uri, folder);
+        self.session.pages.path(uri, Some(&path)).unwrap_or(path)
     }
 
     fn push(&self, event: Event) {
@@ -173,118 +181,7 @@ impl World {
     }
 }
 
-/// Why there is no answer.
-enum Refusal {
-    Overtaken,
-    Fault(Fault),
-}
-
 fn failed(fault: &Fault) -> Error {
     let message = format!("This is a fault of scruple, not of the recipe: {fault}");
     Error { code: ErrorCode::InternalError, message: message.into(), data: None }
-}
-
-/// Threads for answers: enough that a slow one holds up no quick one, few enough to leave the machine to the editor.
-fn pool() -> Option<ThreadPool> {
-    let threads = thread::available_parallelism().map_or(2, |count| count.get().clamp(2, 8));
-    let builder = ThreadPoolBuilder::new().num_threads(threads).stack_size(STACK).thread_name(|index| format!("answer-{index}"));
-    builder.build().inspect_err(|error| log::write(format_args!("no threads for answers: {error}"))).ok()
-}
-
-/// The owner of all that is known.
-struct Owner {
-    arriving: Receiver<Event>,
-    revisions: Revisions,
-    session: Arc<Session>,
-    documents: Arc<Documents>,
-    published: Published,
-    pool: Option<ThreadPool>,
-}
-
-impl Owner {
-    /// Takes events until the handlers are gone.
-    fn run(mut self) {
-        while let Ok(first) = self.arriving.recv() {
-            let questions = self.take_all(first);
-            if let Err(fault) = guarded(|| self.answer(questions)) {
-                log::write(format_args!("questions were dropped: {fault}"));
-            }
-            if let Err(fault) = guarded(|| self.publish()) {
-                log::write(format_args!("findings were not published: {fault}"));
-            }
-        }
-    }
-
-    /// Works in all changes that have arrived, up to a question that needs the state it was asked about.
-    fn take_all(&mut self, first: Event) -> Vec<Question> {
-        let mut questions = Vec::new();
-        let mut next = Some(first);
-        while let Some(event) = next {
-            match event {
-                Event::Question(question) => {
-                    let barrier = question.kind == Kind::Typing;
-                    questions.push(question);
-                    if barrier {
-                        break;
-                    }
-                }
-                change => {
-                    if let Err(fault) = guarded(|| self.work_in(change)) {
-                        log::write(format_args!("a change failed: {fault}"));
-                    }
-                }
-            }
-            next = self.arriving.try_recv().ok();
-        }
-        questions
-    }
-
-    fn work_in(&mut self, change: Event) {
-        let documents = Arc::make_mut(&mut self.documents);
-        match change {
-            Event::Open { path, revision, item } => {
-                let text = SourceText::from(item.text.as_str());
-                documents.open(path, Document { uri: item.uri, version: item.version, text, revision });
-            }
-            Event::Change { path, revision, version, changes } => {
-                if !documents.change(&path, version, revision, changes, self.session.columns) {
-                    log::write(format_args!("a change to {path}, which is not open"));
-                }
-            }
-            Event::Close { path } => {
-                if let Some(document) = documents.close(&path) {
-                    self.published.clear(&document.uri);
-                }
-            }
-            Event::Question(_) => (),
-        }
-    }
-
-    fn answer(&self, questions: Vec<Question>) {
-        if questions.is_empty() {
-            return;
-        }
-        let view = View { session: Arc::clone(&self.session), documents: Arc::clone(&self.documents) };
-        for question in questions {
-            let applied = self.documents.get(&question.path).map_or(question.revision, |document| document.revision);
-            if applied != question.revision {
-                (question.answer)(Err(Overtaken));
-                continue;
-            }
-            let view = view.clone();
-            let answer = move || (question.answer)(Ok(&view));
-            match &self.pool {
-                Some(pool) => pool.spawn_fifo(answer),
-                None => answer(),
-            }
-        }
-    }
-
-    fn publish(&mut self) {
-        for (path, document) in self.documents.iter() {
-            if self.revisions.latest(path) == document.revision {
-                self.published.publish(&document.uri, document.version, Vec::new());
-            }
-        }
-    }
 }

@@ -258,6 +258,14 @@ fn link(
     }
 }
 
+/// The files that the `use` lines of a file lead to, whether they are there or not; refused paths left out.
+pub(super) fn used_paths(file: &FileState) -> impl Iterator<Item = Utf8PathBuf> {
+    let folder = file.path.parent().unwrap_or(Utf8Path::new(""));
+    let relative = file.model.uses.iter().map(|line| line.path.as_str());
+    let written = relative.filter(|path| !path.contains('\\') && !path.starts_with('/') && path.get(1..2) != Some(":"));
+    written.filter_map(move |path| resolved(folder, path)).filter(|path| path.starts_with(&file.root))
+}
+
 /// A relative path put onto a folder, without looking at the disk; none where it climbs above the top.
 fn resolved(folder: &Utf8Path, relative: &str) -> Option<Utf8PathBuf> {
     let mut path = folder.to_owned();

@@ -7,7 +7,7 @@ mod order;
 mod snapshot;
 
 pub use configuration::{Configuration, ConfigurationError};
-pub use disk::{find_root, recipe_files};
+pub use disk::{CONFIGURATION_FILE, find_root, is_home, recipe_files};
 pub use snapshot::{Checked, FileState, Located, Origin, RootView, Snapshot};
 
 use std::collections::BTreeMap;
@@ -164,8 +164,27 @@ impl Workspace {
             .map(Utf8PathBuf::as_path)
     }
 
-    /// Everything that is known now. What did not change is shared with the snapshot before.
+    /// Everything that is known now. What did not change is shared with the snapshot before. Files that `use` lines lead to
+    /// are read where they are not known yet, and so are those that these use.
     pub fn snapshot(&mut self) -> Arc<Snapshot> {
+        loop {
+            let snapshot = self.build();
+            let used: Vec<(Utf8PathBuf, Utf8PathBuf)> = snapshot
+                .files
+                .values()
+                .flat_map(|file| build::used_paths(file).map(|path| (path, file.root.clone())))
+                .filter(|(path, _)| self.ids.get(path).is_none_or(|id| !self.texts.contains_key(id)) && path.is_file())
+                .collect();
+            if used.is_empty() {
+                return snapshot;
+            }
+            for (path, root) in used {
+                self.read(&path, &root);
+            }
+        }
+    }
+
+    fn build(&mut self) -> Arc<Snapshot> {
         let inputs: Vec<build::FileInput> = self
             .texts
             .iter()
