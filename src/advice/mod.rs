@@ -1,12 +1,23 @@
 //! Findings: one file per family, one plain array that lists them.
 
 mod accept;
+mod amounts;
+mod buffering;
+mod definitions;
+mod expectations;
+mod forms;
+mod range;
+mod setting;
+mod steps;
+mod stocks;
+mod temperature;
+mod unevaluated;
 
 use std::sync::Arc;
 
 use crate::evaluate::{Context, Evaluation, Outcome};
 use crate::finding::Finding;
-use crate::model::{Block, Recipe};
+use crate::model::{Block, Body, DefinitionKey, Recipe};
 use crate::text::FileId;
 
 /// Everything that a rule may look at.
@@ -34,18 +45,81 @@ impl<'a> Case<'a> {
     }
 }
 
+/// A block that names another one, and what came out of it.
+#[derive(Clone, Copy)]
+pub struct User<'a> {
+    /// The file that it stands in.
+    pub file: FileId,
+    /// The block.
+    pub block: &'a Arc<Block>,
+    /// What came out of it.
+    pub evaluation: &'a Evaluation,
+}
+
 /// A rule looks at a case and adds what it finds.
 pub type Rule = fn(&Case, &mut Vec<Finding>);
 
 /// Every rule, in the order in which they are asked.
-pub const RULES: &[Rule] = &[];
+pub const RULES: &[Rule] = &[
+    definitions::defined_twice,
+    definitions::hides_the_built_in,
+    definitions::bad_definition,
+    definitions::spelled_otherwise,
+    unevaluated::not_evaluated_yet,
+    steps::quantity_in_step,
+    amounts::said_twice,
+    amounts::ph_said_twice,
+    amounts::same_stock_twice,
+    amounts::adds_to_total,
+    amounts::molality_made_up_to_volume,
+    amounts::added_after_volume,
+    amounts::volume_from_density,
+    amounts::percent_of_what,
+    forms::hydrate_not_stated,
+    forms::mass_fits_other_hydrate,
+    forms::as_what,
+    stocks::outlives_its_parts,
+    stocks::fold_mismatch,
+    stocks::dilution_shift,
+    stocks::salt_shift,
+    stocks::strength_density_disagree,
+    setting::liquid_counted_in,
+    setting::moves_after_setting,
+    setting::about_differs,
+    temperature::temperature_not_stated,
+    temperature::temperature_shift,
+    buffering::weak_buffering,
+    range::outside_model_range,
+    expectations::rule,
+];
 
-/// Every finding of a block: of its lines, of its evaluation, of the rules; those that are accepted left out.
+/// Whether a substance is an acid or a base that the trade sells as solutions of several strengths.
+fn is_acid_or_base(case: &Case, key: &DefinitionKey) -> bool {
+    let scope = case.context.scope;
+    [&scope.own, &scope.built_in]
+        .into_iter()
+        .flat_map(|names| names.named(key.namespace, &key.name))
+        .any(|definition| matches!(&definition.block.body, Body::Substance(substance) if crate::evaluate::comes_in_strengths(substance)))
+}
+
+/// Every finding of a block for itself: of its lines, of its evaluation, of the rules. Nothing is accepted yet.
 pub fn findings(case: &Case) -> Vec<Finding> {
     let mut findings = case.block.findings.clone();
     findings.extend(case.evaluation.findings.iter().cloned());
     for rule in RULES {
         rule(case, &mut findings);
     }
+    findings
+}
+
+/// What only those who use a solution can tell of it.
+pub fn findings_by_use(case: &Case, users: &[User]) -> Vec<Finding> {
+    let mut findings = Vec::new();
+    stocks::dilution_shift_by_use(case, users, &mut findings);
+    findings
+}
+
+/// The findings that the block's author has not accepted, and what is to be said of the acceptances.
+pub fn not_accepted(case: &Case, findings: Vec<Finding>) -> Vec<Finding> {
     accept::apply(case, findings)
 }

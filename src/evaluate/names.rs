@@ -29,11 +29,6 @@ impl<'a> Found<'a> {
     }
 }
 
-/// Whether a reference means a substance at a strength: an ideal solution of it.
-pub fn is_ideal_solution(reference: &Reference, found: &Found) -> bool {
-    reference.strength.is_some() && found.substance().is_some()
-}
-
 /// Finds an ingredient. A bottle that bears its substance's name is the bottle where it is measured out as bought, and
 /// its substance where pure substance is meant.
 pub fn ingredient<'a>(reference: &Reference, as_bought: bool, context: &Context<'a>) -> Result<Found<'a>, Refusal> {

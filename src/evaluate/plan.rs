@@ -392,7 +392,8 @@ impl Planner<'_, '_> {
         }
         let name = &addition.what.text;
         if self.strength_is_missing(addition) {
-            return Err(self.strength_not_stated(&addition.what).into());
+            let is_share = addition.amounts.first().is_some_and(|amount| amount.dimension() == Dimension::VolumeFraction);
+            return Err(if is_share { self.percent_of_what(addition) } else { self.strength_not_stated(&addition.what) }.into());
         }
         Err(Finding::new(
             Code::UnitOfWrongKind,
@@ -411,6 +412,17 @@ impl Planner<'_, '_> {
         }
         let Ok(found) = ingredient(&addition.what, true, self.context) else { return false };
         found.substance().is_some_and(names::comes_in_strengths)
+    }
+
+    /// `2 % v/v nitric acid`: of the concentrated acid as it is sold, or of pure acid?
+    fn percent_of_what(&self, addition: &Addition) -> Finding {
+        Finding::new(
+            Code::PercentOfWhat,
+            addition.what.at,
+            format!("{} by volume can be of the acid as it is sold, or of pure {}.", addition.what.text, addition.what.text),
+        )
+        .help("Name the bottle, or write an amount concentration.")
+        .about(addition.what.key.as_str())
     }
 
     fn strength_not_stated(&self, reference: &Reference) -> Finding {

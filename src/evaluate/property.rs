@@ -121,8 +121,8 @@ fn in_unit(
         match as_formula {
             None => Some(1000.0 * amount_mol * constituent.molar_mass?),
             Some(formula) => {
-                let own = own_formula(constituent, context)?;
-                as_formula_factor(formula, own).map(|mol_per_gram| amount_mol / mol_per_gram)
+                let own = context.constituents.formula_of(&crate::model::NameKey::new(&constituent.name))?;
+                as_formula_factor(formula, &own).map(|mol_per_gram| amount_mol / mol_per_gram)
             }
         }
     };
@@ -133,20 +133,6 @@ fn in_unit(
         Dimension::MassFraction => grams()? / 1000.0 / state.mass_kg,
         _ => return None,
     })
-}
-
-/// The formula of a constituent as its block states it.
-fn own_formula<'a>(constituent: &Constituent, context: &Context<'a>) -> Option<&'a Formula> {
-    let definition = constituent.definition.as_ref()?;
-    let found = [&context.scope.own, &context.scope.built_in]
-        .into_iter()
-        .flat_map(|names| names.named(definition.namespace, &definition.name))
-        .find(|candidate| candidate.key == *definition)?;
-    match &found.block.body {
-        crate::model::Body::Ion(ion) => ion.formula.as_ref().map(|(_, formula)| formula),
-        crate::model::Body::Substance(substance) => substance.formula.as_ref().map(|(_, formula)| formula),
-        _ => None,
-    }
 }
 
 /// The element that a reported formula counts: the first that is not hydrogen or oxygen, carbon only where it is alone,

@@ -6,6 +6,7 @@ use std::collections::HashMap;
 use super::{Block, Body, Complex, Constant, ConstantValue, DefinitionKey, Interaction, Ion, NameKey, Reference, Substance, molar_mass};
 use crate::chemistry::{self, Chemistry, ChemistryBuilder, Component, ComponentId, ConstantId, Mixture, Species, SpeciesId};
 use crate::finding::{Anchor, Code, Finding};
+use crate::syntax::formula::Formula;
 
 /// Molar mass of water, kg/mol (IUPAC standard atomic weights 2021, abridged).
 pub const WATER_KG_PER_MOL: f64 = 0.018_015;
@@ -40,6 +41,7 @@ pub struct Constituents {
     pub defined_by: HashMap<ComponentId, DefinitionKey>,
     /// For each constant, where it comes from and the place of its line.
     pub constants: HashMap<ConstantId, (DefinitionKey, Anchor, Option<String>)>,
+    formulas: HashMap<NameKey, Formula>,
     /// What is wrong with the definitions.
     pub findings: Vec<(DefinitionKey, Finding)>,
 }
@@ -70,6 +72,12 @@ impl Constituents {
     /// The constituent of this name.
     pub fn named(&self, name: &NameKey) -> Option<&Constituent> {
         self.by_name.get(name)
+    }
+
+    /// The formula of an ion or molecule by its name, for masses that are reported as another formula.
+    pub fn formula_of(&self, name: &NameKey) -> Option<Formula> {
+        let definition = self.named(name)?.definition.as_ref()?;
+        self.formulas.get(&definition.name).cloned()
     }
 
     /// Every constituent, in no particular order.
@@ -222,6 +230,10 @@ impl Builder {
                 }
             }
         }
+        let of_ions = ions.iter().filter_map(|(key, _, ion)| Some((key.name.clone(), ion.formula.as_ref()?.1.clone())));
+        let of_molecules =
+            molecules.iter().filter_map(|(key, _, one)| Some((key.name.clone(), one.formula.as_ref()?.1.clone())));
+        let formulas = of_molecules.chain(of_ions).collect();
         let chemistry = self.chemistry.finish().unwrap_or_else(|problem| {
             if let Some((key, block, _)) = ions.last() {
                 let message = format!("The ions of this library do not hang together: {problem}.");
@@ -235,6 +247,7 @@ impl Builder {
             by_substance: self.by_substance,
             defined_by: self.defined_by,
             constants: self.constants,
+            formulas,
             findings: self.findings,
         }
     }

@@ -614,6 +614,33 @@ fn cycle_path(nodes: &[Node], cycle: &[usize], member: usize) -> Vec<usize> {
     vec![member]
 }
 
+/// The findings of a block, with those that only its users can tell, less those that are accepted.
+fn block_findings(file: &FileState, index: usize, checked: &Checked, snapshot: &Snapshot) -> Vec<Finding> {
+    let mut findings = checked.findings.as_ref().clone();
+    let Some(block) = file.model.blocks.get(index).filter(|block| block.recipe().is_some()) else { return findings };
+    let key = block.name.as_ref().map(|name| DefinitionKey {
+        file: file.id,
+        namespace: Namespace::Ingredient,
+        name: name.key.clone(),
+    });
+    let users = key.as_ref().map_or(&[][..], |key| snapshot.users_of(key));
+    snapshot
+        .with_context(file.id, index, |context| {
+            let case = advice::Case { file: file.id, block, evaluation: &checked.evaluation, context };
+            let users: Vec<advice::User> = users
+                .iter()
+                .filter_map(|(file, index)| {
+                    let block = snapshot.files.get(file)?.model.blocks.get(*index)?;
+                    let evaluation = &snapshot.checked(*file, *index)?.evaluation;
+                    Some(advice::User { file: *file, block, evaluation })
+                })
+                .collect();
+            findings.extend(advice::findings_by_use(&case, &users));
+            advice::not_accepted(&case, findings.clone())
+        })
+        .unwrap_or(findings)
+}
+
 /// The findings of a file in the order of their places, at the levels that the configuration gives them.
 fn file_findings(file: &FileState, snapshot: &Snapshot, links: &HashMap<FileId, Vec<Link>>) -> Vec<Located> {
     let Some(root) = snapshot.roots.get(&file.root) else { return Vec::new() };
@@ -630,7 +657,7 @@ fn file_findings(file: &FileState, snapshot: &Snapshot, links: &HashMap<FileId, 
     }
     for (index, block) in file.model.blocks.iter().enumerate() {
         match snapshot.checked(file.id, index) {
-            Some(checked) => checked.findings.iter().for_each(|finding| push(index, finding.clone())),
+            Some(checked) => block_findings(file, index, checked, snapshot).into_iter().for_each(|finding| push(index, finding)),
             None => block.findings.iter().for_each(|finding| push(index, finding.clone())),
         }
         if let Some(name) = &block.name {

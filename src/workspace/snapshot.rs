@@ -92,7 +92,7 @@ impl FileState {
 pub struct Checked {
     /// Its evaluation, where it is a solution or a bottle.
     pub evaluation: Arc<Evaluation>,
-    /// Every finding of the block that was not accepted, lowering and advice included.
+    /// Every finding of the block for itself, lowering and advice included, before any is accepted.
     pub findings: Arc<Vec<Finding>>,
 }
 
