@@ -13,6 +13,7 @@ mod equilibrium;
 mod volume;
 mod warning;
 mod state;
+mod trace;
 mod sensitivity;
 pub mod targets;
 

@@ -11,6 +11,7 @@ use nalgebra::DVector;
 use super::{
     ConstantId, Mixture, State, debye_hueckel,
     equilibrium::newton::Linearisation,
+    trace::Trace,
     water::MOLAR_MASS_kg_per_mol as WATER_kg_per_mol,
 };
 
@@ -39,18 +40,28 @@ impl<'a> Sensitivity<'a> {
         Some((to_totals, -action))
     }
 
-    /// ∂pH for a unit of this mixture added.
+    /// ∂pH for a unit of this mixture added. It may bring components that the state has none of.
     pub fn pH_derivative(&self, direction: &Mixture) -> f64 {
         let system = &self.state.system;
         let mut change = self.to_totals[0] * direction.hydrogen_mol;
-        for (column, id) in system.components.iter().enumerate() {
-            if let Some(amount_mol) = direction.amounts_mol.get(id) {
-                change += self.to_totals[column + 1] * amount_mol;
+        let mut water_mol = direction.water_kg / WATER_kg_per_mol;
+        for (&id, &amount_mol) in &direction.amounts_mol {
+            if amount_mol == 0.0 {
+                continue;
+            }
+            if let Some(at) = system.components.iter().position(|component| *component == id) {
+                change += self.to_totals[at + 1] * amount_mol;
+            } else if self.state.chemistry.component(id).is_some() {
+                let trace = Trace::new(self.state, id);
+                let taken: f64 = self.to_totals.iter().zip(&trace.taken).map(|(d, n)| d * n).sum();
+                let moved: f64 = self.to_formation.iter().zip(&trace.sources).map(|(d, s)| d * s).sum();
+                change += (moved - taken) * amount_mol;
+                water_mol -= trace.water * amount_mol;
             }
         }
         // More water in the same proportions is the same as less of every total.
-        let water = direction.water_kg / WATER_kg_per_mol / system.water_mol;
-        change -= water * self.to_totals.iter().zip(&system.totals_mol).map(|(d, t)| d * t).sum::<f64>();
+        let diluted: f64 = self.to_totals.iter().zip(&system.totals_mol).map(|(d, t)| d * t).sum();
+        change -= diluted * water_mol / system.water_mol;
         -change / core::f64::consts::LN_10
     }
 

@@ -76,6 +76,11 @@ impl Action {
         Self { factors: block.lu(), majors, columns }
     }
 
+    /// The determinant of Q.
+    pub fn determinant(&self) -> f64 {
+        self.factors.determinant()
+    }
+
     /// Q⁻¹ b for every column b, in place; false if Q is singular.
     pub fn solve(&self, right: &mut DMatrix<f64>) -> bool {
         let mut major = DMatrix::from_fn(self.majors.len(), right.ncols(), |i, j| right[(self.majors[i], j)]);

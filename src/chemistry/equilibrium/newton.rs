@@ -83,6 +83,13 @@ impl Linearisation {
         }
     }
 
+    /// Whether the solution is a minimum of the Gibbs energy, as far as the signs of two determinants tell: the energy has as many downward
+    /// directions as the mass balances forbid. Ions of high charge, and interaction coefficients beyond their range, can give solutions
+    /// that are none.
+    fn stable(&self) -> bool {
+        (self.jacobian.determinant() > 0.0) == (self.action.determinant() > 0.0)
+    }
+
     /// The Newton step in λ and μ; `None` if singular.
     fn step(&self, system: &System, point: &Point) -> Option<(DVector<f64>, DVector<f64>)> {
         let (rows, columns) = system.counts.shape();
@@ -128,22 +135,23 @@ impl Linearisation {
 /// Iterates from a point near the solution; false if it does not get there.
 pub(crate) fn finish(system: &System, point: &mut Point, budget: &mut usize) -> bool {
     let mut error = vec![0.0; system.species.len()];
-    let mut longest = f64::INFINITY;
+    let (mut longest, mut stable) = (f64::INFINITY, false);
     for _ in 0..STEPS {
         let Some(water_kg) = system.free_water_kg(&point.molality) else { return false };
         point.water_kg = water_kg;
         point.ln_water_activity = system.activities(&point.molality, &mut point.ln_gamma);
-        for row in 0..error.len() {
-            error[row] = point.ln_molality[row] - system.mass_action(point, row);
+        for (row, (e, x)) in error.iter_mut().zip(&point.ln_molality).enumerate() {
+            *e = x - system.mass_action(point, row);
         }
         if longest < CALM && error.iter().all(|e| e.abs() < RESIDUAL) && system.residual(point) < RESIDUAL {
-            return true;
+            return stable;
         }
         if *budget == 0 {
             return false;
         }
         *budget -= 1;
         let Some(linear) = Linearisation::new(system, point, &error) else { return false };
+        stable = linear.stable();
         let Some((step, change)) = linear.step(system, point) else { return false };
         longest = change.amax().max(step.amax());
         // `amax` passes over NaN; the sums do not.

@@ -15,7 +15,7 @@ fn density() {
     for (t, expected) in [(45.0, 990.2118), (60.0, 983.1947), (75.0, 974.8416), (99.0, 959.0648)] {
         close(water::density_kg_per_m3(t + 273.15), expected, 0.02, "density");
     }
-    close(water::density_kg_per_m3(313.1499), water::density_kg_per_m3(313.1501), 2e-3, "density on both sides of 40 °C");
+    close(water::density_kg_per_m3(313.1499), water::density_kg_per_m3(313.1501), 1e-4, "density on both sides of 40 °C");
 }
 
 /// Kell 1975, J. Chem. Eng. Data 20:97, table of isothermal compressibility (from memory): 45.247e-6/bar at 25 °C, the minimum 44.15 at 46 °C.
@@ -46,7 +46,7 @@ fn permittivity_slope_is_that_of_differences() {
 }
 
 /// The values for computer-program verification in IAPWS R11-07, table 3; then the measurements in cells of Harned & Owen 1958 within
-/// 0.004, and the revision of 2024 within 0.002.
+/// 0.004, and the revision of 2024 within 0.0025.
 #[test]
 fn ionisation() {
     close(water::pKw_at(1000.0, 300.0), 13.906565, 1e-6, "pKw");
@@ -55,7 +55,7 @@ fn ionisation() {
         close(water::pKw(t + 273.15), expected, 4e-3, "pKw");
     }
     for (t, expected) in [(0.0, 14.9465), (25.0, 13.9944), (60.0, 13.0206), (75.0, 12.6971), (100.0, 12.2538)] {
-        close(water::pKw(t + 273.15), expected, 2e-3, "pKw");
+        close(water::pKw(t + 273.15), expected, 2.5e-3, "pKw");
     }
 }
 
