@@ -34,9 +34,9 @@ pub struct Case<'a> {
 }
 
 impl<'a> Case<'a> {
-    /// The recipe, where the block is a solution or a bottle.
+    /// The recipe, where the block is a solution or a bottle; with the lines of the one that it is `like`.
     pub fn recipe(&self) -> Option<&'a Recipe> {
-        self.block.recipe()
+        self.evaluation.recipe.as_deref().or(self.block.recipe())
     }
 
     /// The outcomes of the solution, or of every member of a series.
@@ -86,6 +86,9 @@ pub const RULES: &[Rule] = &[
     setting::liquid_counted_in,
     setting::moves_after_setting,
     setting::about_differs,
+    setting::takes_too_much,
+    setting::alternative_differs,
+    setting::found_differs,
     temperature::temperature_not_stated,
     temperature::temperature_shift,
     buffering::weak_buffering,

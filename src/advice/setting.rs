@@ -119,3 +119,101 @@ pub(super) fn about_differs(case: &Case, findings: &mut Vec<Finding>) {
         );
     }
 }
+
+/// Says that a line takes more than its author allows.
+pub(super) fn takes_too_much(case: &Case, findings: &mut Vec<Finding>) {
+    let Some(recipe) = case.recipe() else { return };
+    let Some(outcome) = case.outcomes().next() else { return };
+    for line in &outcome.lines {
+        let (reference, at_most) = match recipe.entries.get(line.entry).map(|entry| &entry.action) {
+            Some(Action::MakeUp(make_up)) => (&make_up.what, make_up.qualifiers.at_most),
+            Some(Action::Add(addition)) => (&addition.what, addition.qualifiers.at_most),
+            _ => continue,
+        };
+        let Some(at_most) = at_most else { continue };
+        let taken = match at_most.value.dimension() {
+            Dimension::Volume => line.volume_L,
+            Dimension::Mass => Some(line.mass_kg),
+            Dimension::Amount => line.amount_mol,
+            _ => None,
+        };
+        if let Some(taken) = taken.filter(|taken| *taken > at_most.value.value * (1.0 + 1e-9)) {
+            findings.push(
+                Finding::new(
+                    Code::TakesTooMuch,
+                    at_most.at,
+                    format!(
+                        "It takes {}, more than the {} allowed.",
+                        format::with_unit(taken, Some(at_most.value.unit)),
+                        format::with_unit(at_most.value.value, Some(at_most.value.unit))
+                    ),
+                )
+                .help("Use a stronger one, or allow more.")
+                .about(reference.key.as_str()),
+            );
+        }
+    }
+}
+
+/// An alternative must bring the same as the line above it, within this share. Common practice, no source.
+const SAME: f64 = 0.01;
+
+/// Says that an alternative line does not bring the same.
+pub(super) fn alternative_differs(case: &Case, findings: &mut Vec<Finding>) {
+    let Some(outcome) = case.outcomes().next() else { return };
+    for (index, line) in outcome.lines.iter().enumerate().filter(|(_, line)| line.role == Role::Alternative) {
+        let first = outcome.lines.iter().take(index).rev().find(|line| line.role != Role::Alternative);
+        let Some(first) = first else { continue };
+        // What both bring is compared; a counter-ion that only one has is a choice of the author's.
+        let worst = first
+            .per_kg
+            .amounts_mol
+            .iter()
+            .filter_map(|(component, per_kg)| {
+                let here = per_kg * first.mass_kg;
+                let there = line.per_kg.amounts_mol.get(component)? * line.mass_kg;
+                Some((*component, here, there))
+            })
+            .max_by(|one, other| (one.2 / one.1 - 1.0).abs().total_cmp(&(other.2 / other.1 - 1.0).abs()));
+        let message = match worst {
+            Some((_, here, there)) if (there / here - 1.0).abs() <= SAME => continue,
+            Some((component, here, there)) => format!(
+                "This brings {} of {}, the line above {}.",
+                format::amount(there, 4),
+                case.context.constituents.chemistry.component(component).map_or("", |component| component.name.as_str()),
+                format::amount(here, 4)
+            ),
+            None => format!("{} brings nothing that {} brings.", line.name, first.name),
+        };
+        findings.push(
+            Finding::new(Code::AlternativeDiffers, line.at, message)
+                .help("An alternative brings the same amount; correct one of the two.")
+                .related(first.at, "the line above"),
+        );
+    }
+}
+
+/// A found strength further from the computed one than this is a mistake in one of them.
+const FOUND: f64 = 0.05;
+
+/// Says that a found strength is far from the computed one.
+pub(super) fn found_differs(case: &Case, findings: &mut Vec<Finding>) {
+    let Some(recipe) = case.recipe() else { return };
+    let Some((computed, found)) = case.outcomes().next().and_then(|outcome| outcome.found) else { return };
+    let Some(entry) = recipe.entries.iter().find(|entry| matches!(entry.action, Action::Found { .. })) else { return };
+    if (found / computed - 1.0).abs() > FOUND {
+        findings.push(
+            Finding::new(
+                Code::FoundDiffers,
+                entry.at,
+                format!(
+                    "The strength found is {}, {:.0} % from the {} that the recipe gives.",
+                    format::concentration(found, 4),
+                    100.0 * (found / computed - 1.0).abs(),
+                    format::concentration(computed, 4)
+                ),
+            )
+            .help("Check the weighing and the titration."),
+        );
+    }
+}

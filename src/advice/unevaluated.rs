@@ -4,7 +4,7 @@ use super::Case;
 use super::definitions::line_anchor;
 use crate::finding::{Code, Finding};
 use crate::model::Body;
-use crate::syntax::tree::{Content, QualifierKind, Statement};
+use crate::syntax::tree::{Content, Statement};
 
 /// Says which statements have no effect on the values yet.
 pub(super) fn not_evaluated_yet(case: &Case, findings: &mut Vec<Finding>) {
@@ -15,23 +15,13 @@ pub(super) fn not_evaluated_yet(case: &Case, findings: &mut Vec<Finding>) {
             Statement::DriveOff(_) => "`drive off`",
             Statement::Filter => "`filter`",
             Statement::Wait(_) => "`wait`",
-            Statement::Or(_) => "An alternative line",
-            Statement::Like(_) => "`like`: the solution has no values",
-            Statement::Without(_) => "`without`",
             Statement::Open => "`open`",
             Statement::Under(_) => "A gas above the liquid",
             Statement::UsedAt(used) if used.under.is_some() => "A gas above the liquid",
-            Statement::StandardiseAgainst(_) | Statement::Found(_) => "A found strength",
-            Statement::ReadyAfter(_) => "`ready after`",
             Statement::KeepAwayFrom(_) => "`keep away from`",
             Statement::Header(header) if header.kind == crate::syntax::tree::BlockKind::Solid => "A solid that can precipitate",
             Statement::Balance(_) | Statement::Ware(_) | Statement::Meter(_) if matches!(case.block.body, Body::Lab(_)) => {
                 "Equipment"
-            }
-            Statement::Ingredient(ingredient)
-                if ingredient.qualifiers.iter().any(|qualifier| matches!(qualifier.kind, QualifierKind::AtMost(_))) =>
-            {
-                "`at most`"
             }
             _ => continue,
         };

@@ -5,11 +5,12 @@ use super::names::ingredient;
 use super::plan::{Dose, Extent, Finals, Planned, Work, litres_of, plan};
 use super::property::property_value;
 use super::verdicts::verdicts;
+use super::found;
 use super::{Context, LineOutcome, Outcome, PartOutcome, Refusal, Role, SetPoint, Solute};
 use crate::chemistry::targets::{TargetFailure, find_root};
 use crate::chemistry::{Mixture, State, water};
 use crate::finding::{Anchor, Code, Finding};
-use crate::model::{Block, Goal, GoalKind, Property, Qualifiers, Recipe};
+use crate::model::{Action, Block, Goal, GoalKind, Property, Qualifiers, Recipe};
 use crate::units::format;
 
 /// Rounds of settling how much is made; each closes in by a factor of ten or more.
@@ -57,15 +58,17 @@ pub(super) fn evaluate(
     findings: &mut Vec<Finding>,
 ) -> Result<Outcome, Refusal> {
     let (temperature_K, half_width_K) = context.made_at_K(recipe);
-    if recipe.like.is_some() {
-        return Err(Refusal::reported());
-    }
     let plan = plan(recipe, index, temperature_K, context)?;
     let bench = Bench { plan: &plan, temperature_K, context };
     bench.has_extent(block)?;
     let mut unknowns = vec![0.0; plan.len()];
     let run = bench.meet_finished_goals(&mut unknowns, 0)?;
-    let outcome = bench.outcome(run, half_width_K);
+    let mut outcome = bench.outcome(run, half_width_K);
+    for entry in &recipe.entries {
+        if let Action::Found { what, strength, .. } = &entry.action {
+            found::take_over(&mut outcome, what, strength, context)?;
+        }
+    }
     verdicts(recipe, outcome, context, findings)
 }
 
@@ -97,7 +100,7 @@ impl Bench<'_, '_> {
                 }
                 Work::SetPh { titrants, .. } => has_liquid |= titrants.iter().any(|goods| goods.is_liquid),
                 Work::Adjust { goods, .. } | Work::ByEye { goods, .. } => has_liquid |= goods.is_liquid,
-                Work::Divider => {}
+                Work::Divider | Work::Instead { .. } => {}
             }
         }
         if self.plan.is_empty() || !has_extent {
@@ -245,6 +248,7 @@ impl Bench<'_, '_> {
                     masses[0] = dose.of(&of_part);
                     beaker.add(goods, masses[0]);
                 }
+                Work::Instead { dose, .. } => masses[0] = dose.of(&of_part),
                 Work::Pair { members, kg_per_unit, total, .. } => {
                     let total = total.of(&of_part);
                     masses = [total * (1.0 - unknown) * kg_per_unit[0], total * unknown * kg_per_unit[1]];
@@ -540,7 +544,7 @@ impl Bench<'_, '_> {
         let mut solutes: Vec<Solute> = Vec::new();
         let mut take = |line: &Planned, goods: &Goods, mass_kg: f64, role: Role| {
             let amount_mol = goods.solute.as_ref().map(|(_, moles, _)| moles * mass_kg);
-            for solute in &goods.solutes {
+            for solute in goods.solutes.iter().filter(|_| role != Role::Alternative) {
                 let solute = scaled(solute, mass_kg);
                 match solutes.iter_mut().find(|known| known.definition == solute.definition) {
                     Some(known) => {
@@ -567,6 +571,7 @@ impl Bench<'_, '_> {
         for (line, masses) in self.plan.iter().zip(&masses) {
             match &line.work {
                 Work::Add { goods, .. } => take(line, goods, masses[0], Role::Stated),
+                Work::Instead { goods, .. } => take(line, goods, masses[0], Role::Alternative),
                 Work::Pair { members, .. } => {
                     take(line, &members[0], masses[0], Role::OfPair);
                     take(line, &members[1], masses[1], Role::OfPair);
@@ -608,6 +613,7 @@ impl Bench<'_, '_> {
             uses: Vec::new(),
             verdicts: Vec::new(),
             solutes,
+            found: None,
             made_up,
         }
     }

@@ -123,6 +123,7 @@ pub(super) fn evaluate(block: &Block, recipe: &Recipe, context: &Context) -> Res
         uses: Vec::new(),
         verdicts: Vec::new(),
         solutes,
+        found: None,
         made_up: true,
     })
 }

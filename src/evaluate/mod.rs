@@ -2,7 +2,9 @@
 
 mod bench;
 mod bottle;
+mod found;
 mod goods;
+mod like;
 mod names;
 mod outcome;
 mod plan;
@@ -61,6 +63,17 @@ pub fn evaluate(block: &Block, context: &Context) -> Evaluation {
     let name = block.name.as_ref().map_or("", |name| name.text.as_str());
     let mut findings = Vec::new();
     let mut members = Vec::new();
+    let merged = match (recipe.sound, is_bottle, recipe.like.is_some() || !recipe.without.is_empty()) {
+        (true, false, true) => match like::with_likeness(recipe, context, 0) {
+            Ok(merged) => Some(Arc::new(merged)),
+            Err(refusal) => {
+                let members = vec![Member { name: name.to_string(), outcome: None }];
+                return Evaluation { recipe: None, members, findings: refusal.into_findings() };
+            }
+        },
+        _ => None,
+    };
+    let recipe = merged.as_deref().unwrap_or(recipe);
     for index in 0..recipe.members {
         let outcome = match (recipe.sound, is_bottle) {
             (false, _) => None,
@@ -80,7 +93,7 @@ pub fn evaluate(block: &Block, context: &Context) -> Evaluation {
             unique.push(finding);
         }
     }
-    Evaluation { members, findings: unique }
+    Evaluation { recipe: merged, members, findings: unique }
 }
 
 /// A solution's outcome, or the findings that say why there is none.

@@ -4,12 +4,14 @@ use std::sync::Arc;
 
 use crate::chemistry::{Failure, Mixture, State};
 use crate::finding::{Anchor, Finding};
-use crate::model::{DefinitionKey, Property};
+use crate::model::{DefinitionKey, Property, Recipe};
 use crate::units::Unit;
 
 /// What came out of evaluating a solution or a bottle.
 #[derive(Clone, Debug, Default)]
 pub struct Evaluation {
+    /// The recipe with the lines of the one that it is `like`, where it is like one; entries are counted in it.
+    pub recipe: Option<Arc<Recipe>>,
     /// The solution, or the members of a series in order. Empty for blocks that are no recipe.
     pub members: Vec<Member>,
     /// What the evaluation found; advice is given on top of it.
@@ -61,6 +63,8 @@ pub struct Outcome {
     pub verdicts: Vec<Verdict>,
     /// The substances that were brought, water left out, with their amounts where they have one.
     pub solutes: Vec<Solute>,
+    /// Where a strength was found: the computed and the found one, mol/L.
+    pub found: Option<(f64, f64)>,
     /// Whether the liquid is mostly made up by weighing or by volumes that do not add up to a mark.
     pub made_up: bool,
 }
@@ -89,6 +93,8 @@ pub enum Role {
     MakesUp,
     /// It adjusts the pH or another property.
     Adjusts,
+    /// It could go in instead of the line above, and does not.
+    Alternative,
 }
 
 /// What a line brought.

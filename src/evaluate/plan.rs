@@ -30,6 +30,13 @@ pub enum Work {
         /// So much, kg.
         dose: Dose,
     },
+    /// So much of this could go in instead of the line above.
+    Instead {
+        /// Of this.
+        goods: Goods,
+        /// So much, kg.
+        dose: Dose,
+    },
     /// Two forms, split to meet the goal in the finished solution.
     Pair {
         /// The members.
@@ -166,9 +173,12 @@ pub fn plan(recipe: &Recipe, index: usize, temperature_K: f64, context: &Context
                 part += 1;
                 Ok(Work::Divider)
             }
-            // An alternative brings the same; a change of the beaker is not worked out yet and said so by the advice.
-            Action::Alternative(_)
-            | Action::BringTo(_)
+            Action::Alternative(addition) => planner.addition(addition).map(|work| match work {
+                Work::Add { goods, dose } => Work::Instead { goods, dose },
+                other => other,
+            }),
+            // A change of the beaker is not worked out yet, and the advice says so.
+            Action::BringTo(_)
             | Action::DriveOff(_)
             | Action::Filter
             | Action::Wait(_)

@@ -106,6 +106,9 @@ codes! {
     FoldMismatch, "fold-mismatch", Warning, "A concentrate diluted by another factor than it says.";
     StrengthDensityDisagree, "strength-density-disagree", Warning, "A density that belongs to another strength.";
     AboutDiffers, "about-differs", Warning, "An author's estimate far from the computed amount.";
+    TakesTooMuch, "takes-too-much", Warning, "A line that takes more than the author allows.";
+    AlternativeDiffers, "alternative-differs", Warning, "An alternative that does not bring the same as the line above it.";
+    FoundDiffers, "found-differs", Warning, "A found strength far from the computed one.";
     QuantityInStep, "quantity-in-step", Warning, "A quantity in the text of a step, where it is not evaluated.";
     LiquidCountedIn, "liquid-counted-in", Hint, "The liquid of the make-up, counted as present when the pH is set.";
     VolumeFromDensity, "volume-from-density", Hint, "A volume worked out from mass and density.";

@@ -586,7 +586,8 @@ fn check_cycle(snapshot: &Snapshot, nodes: &[Node], cycle: &[usize], member: usi
         break;
     }
     let name = name_of(&member);
-    let evaluation = Evaluation { members: vec![evaluate::Member { name, outcome: None }], findings: Vec::new() };
+    let members = vec![evaluate::Member { name, outcome: None }];
+    let evaluation = Evaluation { members, ..Evaluation::default() };
     let checked = Checked { evaluation: Arc::new(evaluation), findings: Arc::new(findings) };
     Some(((node.file, node.block), Arc::new(checked)))
 }
