@@ -22,6 +22,11 @@ EDITORS = [
 @pytest_lsp.fixture(params=EDITORS, config=ClientServerConfig(server_command=[SCRUPLE, "serve"]))
 async def client(request, lsp_client: LanguageClient):
     capabilities = client_capabilities(request.param)
+
+    @lsp_client.feature("client/registerCapability")
+    def _(params: types.RegistrationParams):
+        lsp_client.registered = [registration.method for registration in params.registrations]
+
     answer = await lsp_client.initialize_session(
         types.InitializeParams(process_id=None, root_uri=None, capabilities=capabilities)
     )
