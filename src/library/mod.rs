@@ -1,5 +1,9 @@
 //! The built-in library: substances, ions and constants, written in the language itself, each with its source.
 
+mod hazards;
+
+pub use hazards::hazard_statement;
+
 use std::sync::{Arc, LazyLock};
 
 use crate::model::{self, BlockRole, Constituents, DefinitionKey, File, Names, namespace};
