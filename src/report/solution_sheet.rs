@@ -1,0 +1,271 @@
+//! A solution as the author of a method and its reviewer want to read it: what to weigh and measure, what comes out, what was
+//! expected of it, and what to mind.
+
+use super::assumptions::assumptions;
+use super::cautions::{cautions, hazards};
+use super::sheet::{Column, Part, Sheet, Table};
+use super::solution::reason;
+use super::Subject;
+use crate::chemistry::State;
+use crate::evaluate::{LineOutcome, Outcome, SetPoint, Verdict};
+use crate::model::{Action, Amount, Reference, Stated, Storage};
+use crate::units::{Dimension, format};
+
+/// Significant figures of what is weighed and measured.
+const FIGURES: usize = 4;
+
+/// The sheet of a solution.
+pub fn solution_sheet(subject: &Subject) -> Sheet {
+    let mut sheet = Sheet { title: subject.member.name.clone(), identity: identity(subject), sections: Vec::new() };
+    match subject.member.outcome.as_deref() {
+        Some(outcome) => {
+            sheet.section("", vec![Part::Facts(facts(subject, outcome))]);
+            sheet.section("To weigh and measure", vec![Part::Table(ingredients(subject, outcome))]);
+            sheet.section("Setting the pH", outcome.set_points.iter().map(|point| set_point(subject, point)).collect());
+            sheet.section("Steps", vec![steps(subject)]);
+            sheet.section("Keeping", vec![Part::List(keeping(subject))]);
+            sheet.section("Expected", vec![Part::Table(expected(subject, outcome))]);
+            sheet.section("In the finished solution", vec![Part::Table(totals(outcome))]);
+            sheet.section("Taken for granted", vec![Part::List(assumptions(subject, outcome))]);
+            sheet.section("Cautions", cautions(&hazards(subject, outcome)));
+        }
+        None => {
+            sheet.section("", vec![Part::Paragraph("This recipe has no values; the findings below say why.".to_owned())]);
+            sheet.section("Steps", vec![steps(subject)]);
+        }
+    }
+    sheet.section("Findings", vec![Part::List(findings(subject))]);
+    sheet
+}
+
+fn identity(subject: &Subject) -> Vec<String> {
+    let mut identity = vec![format!("{}, line {}", subject.selection.name(&subject.file.path), subject.header_line())];
+    if let Some(Stated { value: document, .. }) = &subject.recipe.document {
+        let mut words = document.code.clone();
+        if let Some(revision) = &document.revision {
+            words.push_str(&format!(", revision {revision}"));
+        }
+        if let Some(effective) = &document.effective {
+            words.push_str(&format!(", effective {effective}"));
+        }
+        identity.push(words);
+    }
+    identity
+}
+
+fn facts(subject: &Subject, outcome: &Outcome) -> Vec<(String, String)> {
+    let made_at = format::temperature(outcome.made_at_K);
+    let mut facts = vec![(
+        "makes".to_owned(),
+        format!("{} ({}), at {made_at}", format::volume(outcome.volume_L, FIGURES), format::mass(outcome.mass_kg, FIGURES)),
+    )];
+    let mut fact = |name: &str, value: String| facts.push((name.to_owned(), value));
+    if let Some(fold) = subject.recipe.concentrate {
+        fact("concentrate", format!("{} times as strong as used", format::plain(fold.value)));
+    }
+    match &outcome.finished {
+        Err(failure) => fact("state", format!("not worked out: {failure}")),
+        Ok(state) => {
+            let set = outcome.set_points.last().map(|point| point.state.pH());
+            let as_set = set.map(|set| format!(", set to {} before the rest", format::ph(set)));
+            fact("pH", format!("{} at {made_at}{}", format::ph(state.pH()), as_set.unwrap_or_default()));
+            for (temperature_K, state) in &outcome.uses {
+                let name = format!("pH at {}", format::temperature(*temperature_K));
+                match state {
+                    Ok(state) => fact(&name, format::ph(state.pH())),
+                    Err(failure) => fact(&name, format!("not worked out: {failure}")),
+                }
+            }
+            state_facts(state, &mut fact);
+        }
+    }
+    facts
+}
+
+fn state_facts(state: &State, fact: &mut impl FnMut(&str, String)) {
+    fact("pH per kelvin", signed(state.dpH_dT_per_K(), 3));
+    if let Ok(value) = state.dilution_value() {
+        fact("dilution value", format!("{} (pH change with an equal volume of water)", signed(value, 2)));
+    }
+    fact("buffer capacity", format!("{} per unit of pH", format::concentration(state.buffer_capacity_mol_per_L(), 3)));
+    let molality = format::molality(state.ionic_strength_mol_per_kg, 3);
+    fact("ionic strength", format!("{} ({molality})", format::concentration(state.ionic_strength_mol_per_L(), 3)));
+    fact("osmolality", format::osmolality(state.osmolality_mol_per_kg(), 3));
+    fact("density", format::density(state.density_kg_per_m3(), FIGURES));
+}
+
+fn signed(value: f64, decimals: usize) -> String {
+    let shown = format::fixed(value, decimals);
+    if value > 0.0 { format!("+{shown}") } else { shown }
+}
+
+fn ingredients(subject: &Subject, outcome: &Outcome) -> Table {
+    let rows = outcome.lines.iter().map(|line| {
+        vec![
+            subject.line(line.at).to_string(),
+            take(subject, line),
+            what(subject, line),
+            line.amount_mol.map(|amount| format::amount(amount, FIGURES)).unwrap_or_default(),
+            line.concentration_mol_per_L.map(|brought| format::concentration(brought, FIGURES)).unwrap_or_default(),
+        ]
+    });
+    Table {
+        columns: vec![
+            Column::numbers("line"),
+            Column::numbers("take"),
+            Column::words("of"),
+            Column::numbers("amount"),
+            Column::numbers("finished"),
+        ],
+        rows: rows.collect(),
+    }
+}
+
+/// How much is taken: as written where the line states it, else worked out.
+fn take(subject: &Subject, line: &LineOutcome) -> String {
+    let measured = match line.volume_L {
+        Some(volume) => format::volume(volume, FIGURES),
+        None => format::mass(line.mass_kg, FIGURES),
+    };
+    match subject.recipe.entries.get(line.entry).map(|entry| &entry.action) {
+        Some(Action::Add(addition)) => {
+            let amount = addition.amounts.get(subject.member_index).or(addition.amounts.last());
+            let written = amount.filter(|_| subject.recipe.members == 1).and_then(|amount| as_written(subject, line, amount));
+            let about = if addition.about { "about " } else { "" };
+            let tolerance = addition.qualifiers.tolerance.map(|stated| subject.written(stated.at.line, stated.at.span));
+            let tolerance = tolerance.map(|words| format!(" ± {}", words.trim_start_matches(['±', ' ']))).unwrap_or_default();
+            format!("{about}{}{tolerance}", written.unwrap_or(measured))
+        }
+        // What a meter or a mark decides is known only about.
+        Some(Action::MakeUp(_)) => match line.volume_L {
+            Some(volume) => format!("about {}", format::volume(volume, 3)),
+            None => format!("about {}", format::mass(line.mass_kg, 3)),
+        },
+        _ => measured,
+    }
+}
+
+/// A mass or volume in the author's own digits; other quantities are worked out.
+fn as_written(subject: &Subject, line: &LineOutcome, amount: &Amount) -> Option<String> {
+    matches!(amount.dimension(), Dimension::Mass | Dimension::Volume).then(|| subject.written(line.at.line, amount.span))
+}
+
+/// What is taken: strength and name as written, the stock it comes from, what it is taken to.
+fn what(subject: &Subject, line: &LineOutcome) -> String {
+    let Some(entry) = subject.recipe.entries.get(line.entry) else { return line.name.clone() };
+    let named = |reference: &Reference| match reference.strength {
+        Some(strength) => subject.written(reference.at.line, strength.span.to(reference.at.span)),
+        None => reference.text.clone(),
+    };
+    match &entry.action {
+        Action::Add(addition) => match &addition.qualifiers.from {
+            Some(from) => format!("{}, for {}", named(from), addition.what.text),
+            None => named(&addition.what),
+        },
+        Action::MakeUp(make_up) => {
+            let used = make_up.alternative.as_ref().filter(|other| other.text == line.name).unwrap_or(&make_up.what);
+            let goal = make_up.goals.get(subject.member_index).or(make_up.goals.last());
+            match goal {
+                Some(goal) => format!("{} to {}", named(used), subject.written(goal.at.line, goal.at.span).trim_start_matches("to ")),
+                None => named(used),
+            }
+        }
+        Action::Pair(pair) => named(if pair.second.text == line.name { &pair.second } else { &pair.first }),
+        _ => line.name.clone(),
+    }
+}
+
+fn set_point(subject: &Subject, point: &SetPoint) -> Part {
+    let window = match point.window {
+        Some((low, high)) => format!(" ({} to {})", format::ph(low), format::ph(high)),
+        None => String::new(),
+    };
+    let elsewhere = if point.elsewhere { "; the target itself holds at another temperature or dilution" } else { "" };
+    Part::Paragraph(format!(
+        "Line {}: from pH {} to {}{window} on the meter, in {}{elsewhere}.",
+        subject.line(point.at),
+        format::ph(point.pH_before),
+        format::ph(point.state.pH()),
+        format::volume(point.state.volume_L, 3),
+    ))
+}
+
+fn steps(subject: &Subject) -> Part {
+    Part::List(subject.recipe.steps.iter().map(|step| format!("Line {}: {}", subject.line(step.at), step.value)).collect())
+}
+
+fn keeping(subject: &Subject) -> Vec<String> {
+    let whole = |line: usize| {
+        let text = subject.block.lines.get(line).map_or(0, |line| line.text.len());
+        subject.written(line, crate::text::Span::new(0, text))
+    };
+    let stored = |storage: &Storage| subject.written(storage.at.line, storage.at.span);
+    let mut said: Vec<String> = subject.recipe.storage.iter().map(stored).collect();
+    said.extend(subject.recipe.ready_after.iter().map(|stated| without_comment(&whole(stated.at.line))));
+    said.extend(subject.recipe.use_within.iter().map(|stated| without_comment(&whole(stated.at.line))));
+    said
+}
+
+/// A line without the comment at its end.
+fn without_comment(line: &str) -> String {
+    line.split(" # ").next().unwrap_or_default().trim().to_owned()
+}
+
+fn expected(subject: &Subject, outcome: &Outcome) -> Table {
+    let rows = outcome.verdicts.iter().map(|verdict| {
+        let words = subject.written(verdict.at.line, verdict.at.span);
+        vec![
+            subject.line(verdict.at).to_string(),
+            words.strip_prefix("expect ").unwrap_or(&words).to_owned(),
+            format::temperature(verdict.temperature_K),
+            verdict.value.map(|value| format::with_unit(value, verdict.unit)).unwrap_or_default(),
+            judged(subject, verdict),
+        ]
+    });
+    Table {
+        columns: vec![
+            Column::numbers("line"),
+            Column::words("expected"),
+            Column::numbers("at"),
+            Column::numbers("found"),
+            Column::words(""),
+        ],
+        rows: rows.collect(),
+    }
+}
+
+fn judged(subject: &Subject, verdict: &Verdict) -> String {
+    match verdict.holds {
+        Some(true) => "holds".to_owned(),
+        Some(false) => "does not hold".to_owned(),
+        None => reason(subject, verdict).unwrap_or_default(),
+    }
+}
+
+fn totals(outcome: &Outcome) -> Table {
+    let mut rows = Vec::new();
+    if let Ok(state) = &outcome.finished {
+        let mut totals: Vec<(f64, &str)> = state
+            .totals_mol_per_L()
+            .filter_map(|(id, concentration)| Some((concentration, state.chemistry().component(id)?.name.as_str())))
+            .filter(|(concentration, _)| *concentration > 0.0)
+            .collect();
+        totals.sort_by(|one, other| other.0.total_cmp(&one.0).then(one.1.cmp(other.1)));
+        rows.extend(totals.into_iter().map(|(concentration, name)| {
+            vec![name.to_owned(), format::concentration(concentration, FIGURES)]
+        }));
+    }
+    Table { columns: vec![Column::words("constituent, all forms"), Column::numbers("total")], rows }
+}
+
+fn findings(subject: &Subject) -> Vec<String> {
+    subject
+        .findings()
+        .map(|located| {
+            let finding = &located.finding;
+            let line = subject.line(finding.at);
+            let help = if finding.help.is_empty() { String::new() } else { format!(" {}", finding.help) };
+            format!("{} {}, line {line}: {}{help}", finding.level.word(), finding.code.name(), finding.message)
+        })
+        .collect()
+}
