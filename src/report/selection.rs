@@ -71,6 +71,11 @@ impl Selection {
         self.findings().filter(|(_, located)| located.finding.level == level).count()
     }
 
+    /// How many solutions there are; a series counts once.
+    pub fn solution_count(&self) -> usize {
+        self.solutions().filter(|subject| subject.member_index == 0).count()
+    }
+
     /// Every solution of the files, in the order of files and lines; one for each member of a series.
     pub fn solutions(&self) -> impl Iterator<Item = Subject<'_>> {
         self.files().flat_map(move |file| {

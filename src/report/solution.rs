@@ -37,6 +37,7 @@ pub struct SolutionReport {
     pub osmolality_mol_per_kg: Option<f64>,
     pub ingredients: Vec<IngredientReport>,
     pub set_points: Vec<SetPointReport>,
+    pub found: Option<FoundReport>,
     pub at: Vec<StateReport>,
     pub species: Vec<SpeciesReport>,
     pub totals: Vec<TotalReport>,
@@ -76,6 +77,13 @@ pub struct SetPointReport {
     pub pH_before: Option<f64>,
     pub pH: Option<f64>,
     pub volume_L: Option<f64>,
+}
+
+#[derive(Debug, Serialize)]
+#[allow(missing_docs, reason = "each field is described in show.schema.json")]
+pub struct FoundReport {
+    pub computed_mol_per_L: Option<f64>,
+    pub found_mol_per_L: Option<f64>,
 }
 
 #[derive(Debug, Serialize)]
@@ -160,6 +168,10 @@ pub fn solution_report(subject: &Subject) -> SolutionReport {
         osmolality_mol_per_kg: of_state(State::osmolality_mol_per_kg),
         ingredients: lines(outcome).map(|line| ingredient(subject, line)).collect(),
         set_points: outcome.into_iter().flat_map(|outcome| &outcome.set_points).map(|point| set_point(subject, point)).collect(),
+        found: outcome.and_then(|outcome| outcome.found).map(|(computed, found)| FoundReport {
+            computed_mol_per_L: number(computed),
+            found_mol_per_L: number(found),
+        }),
         at: outcome
             .into_iter()
             .flat_map(|outcome| &outcome.uses)
@@ -191,6 +203,7 @@ fn ingredient(subject: &Subject, line: &LineOutcome) -> IngredientReport {
             Role::OfPair => "pair",
             Role::MakesUp => "makes up",
             Role::Adjusts => "adjusts",
+        Role::Alternative => "alternative",
         },
         mass_g: number(1000.0 * line.mass_kg),
         volume_mL: line.volume_L.and_then(|volume| number(1000.0 * volume)),

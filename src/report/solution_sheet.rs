@@ -63,6 +63,10 @@ fn facts(subject: &Subject, outcome: &Outcome) -> Vec<(String, String)> {
     if let Some(fold) = subject.recipe.concentrate {
         fact("concentrate", format!("{} times as strong as used", format::plain(fold.value)));
     }
+    if let Some((computed, found)) = outcome.found {
+        let computed = format::concentration(computed, FIGURES);
+        fact("found strength", format!("{} (by weighing {computed})", format::concentration(found, FIGURES)));
+    }
     match &outcome.finished {
         Err(failure) => fact("state", format!("not worked out: {failure}")),
         Ok(state) => {
@@ -141,6 +145,7 @@ fn take(subject: &Subject, line: &LineOutcome) -> String {
             Some(volume) => format!("about {}", format::volume(volume, 3)),
             None => format!("about {}", format::mass(line.mass_kg, 3)),
         },
+        Some(Action::Alternative(_)) => format!("or {measured}"),
         _ => measured,
     }
 }
@@ -170,6 +175,7 @@ fn what(subject: &Subject, line: &LineOutcome) -> String {
                 None => named(used),
             }
         }
+        Action::Alternative(addition) => named(&addition.what),
         Action::Pair(pair) => named(if pair.second.text == line.name { &pair.second } else { &pair.first }),
         _ => line.name.clone(),
     }

@@ -8,7 +8,7 @@ use camino::{Utf8Path, Utf8PathBuf};
 use rayon::prelude::*;
 
 use super::snapshot::{Checked, FileState, Located, Origin, RootView, Snapshot};
-use super::{Configuration, order};
+use super::{Configuration, Progress, order};
 use crate::advice;
 use crate::evaluate::{self, Context, Evaluation};
 use crate::finding::{Anchor, Code, Finding, Place};
@@ -104,6 +104,7 @@ pub(super) fn snapshot(
     inputs: Vec<FileInput>,
     configurations: &BTreeMap<Utf8PathBuf, Arc<Configuration>>,
     last: Option<&Snapshot>,
+    progress: &Progress,
 ) -> Snapshot {
     let files: BTreeMap<FileId, Arc<FileState>> =
         inputs.into_par_iter().map(|input| (input.id, file_state(input, last))).collect();
@@ -121,7 +122,7 @@ pub(super) fn snapshot(
         users: HashMap::new(),
         library_files: LIBRARY_FILES.clone(),
     };
-    evaluate_all(&mut snapshot, last);
+    evaluate_all(&mut snapshot, last, progress);
     let findings: HashMap<FileId, Arc<Vec<Located>>> = snapshot
         .files
         .par_iter()
@@ -387,8 +388,9 @@ struct Node {
     is_open: bool,
 }
 
-fn evaluate_all(snapshot: &mut Snapshot, last: Option<&Snapshot>) {
+fn evaluate_all(snapshot: &mut Snapshot, last: Option<&Snapshot>, progress: &Progress) {
     let mut nodes = nodes(snapshot);
+    progress.expect(nodes.len());
     link_nodes(snapshot, &mut nodes);
     for node in &nodes {
         let user = (node.file, node.block);
@@ -412,7 +414,9 @@ fn evaluate_all(snapshot: &mut Snapshot, last: Option<&Snapshot>) {
     for wave in &order.waves {
         let work = |index: &usize| -> Option<((FileId, usize), Inputs, Arc<Checked>)> {
             let node = nodes.get(*index)?;
-            check(snapshot, &nodes, node, last)
+            let checked = check(snapshot, &nodes, node, last);
+            progress.one_done();
+            checked
         };
         let members: Vec<&usize> = wave.iter().filter(|index| !in_cycle.contains(index)).collect();
         // Small waves are quicker done than shared out.

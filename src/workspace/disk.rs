@@ -27,6 +27,11 @@ pub fn find_root(path: &Utf8Path, folder: &Utf8Path) -> Utf8PathBuf {
         .to_owned()
 }
 
+/// Whether a folder is a root by what stands in it: a `scruple.toml`, or a version control's own folder.
+pub fn is_marked(folder: &Utf8Path) -> bool {
+    folder.join(CONFIGURATION_FILE).is_file() || VERSION_CONTROL.iter().any(|mark| folder.join(mark).exists())
+}
+
 /// Whether a folder is a bare home directory or the root of the file system, which are never walked.
 pub fn is_home(folder: &Utf8Path) -> bool {
     let home = std::env::var("HOME").or_else(|_| std::env::var("USERPROFILE")).unwrap_or_default();
@@ -54,6 +59,24 @@ pub fn recipe_files(folder: &Utf8Path) -> Vec<Utf8PathBuf> {
         .collect();
     files.sort();
     files
+}
+
+/// The folders below a folder that are roots of their own, in order; hidden and ignored ones left out.
+pub fn nested_roots(folder: &Utf8Path) -> Vec<Utf8PathBuf> {
+    if is_home(folder) {
+        return Vec::new();
+    }
+    let mut roots: Vec<Utf8PathBuf> = ignore::WalkBuilder::new(folder)
+        .max_depth(Some(DEEPEST))
+        .require_git(false)
+        .build()
+        .filter_map(Result::ok)
+        .filter(|entry| entry.depth() > 1 && entry.file_name() == CONFIGURATION_FILE)
+        .filter_map(|entry| Utf8PathBuf::from_path_buf(entry.into_path()).ok())
+        .filter_map(|path| path.parent().map(Utf8Path::to_owned))
+        .collect();
+    roots.sort();
+    roots
 }
 
 /// The text of a file; nothing where there is no such file.

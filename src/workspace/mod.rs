@@ -4,10 +4,12 @@ mod build;
 mod configuration;
 mod disk;
 mod order;
+mod progress;
 mod snapshot;
 
 pub use configuration::{Configuration, ConfigurationError};
-pub use disk::{CONFIGURATION_FILE, find_root, is_home, recipe_files};
+pub use disk::{CONFIGURATION_FILE, find_root, is_home, is_marked, nested_roots, recipe_files};
+pub use progress::Progress;
 pub use snapshot::{Checked, FileState, Located, Origin, RootView, Snapshot};
 
 use std::collections::BTreeMap;
@@ -167,8 +169,13 @@ impl Workspace {
     /// Everything that is known now. What did not change is shared with the snapshot before. Files that `use` lines lead to
     /// are read where they are not known yet, and so are those that these use.
     pub fn snapshot(&mut self) -> Arc<Snapshot> {
+        self.snapshot_watched(&Progress::default())
+    }
+
+    /// As [`Workspace::snapshot`], telling how far it has come.
+    pub fn snapshot_watched(&mut self, progress: &Progress) -> Arc<Snapshot> {
         loop {
-            let snapshot = self.build();
+            let snapshot = self.build(progress);
             let used: Vec<(Utf8PathBuf, Utf8PathBuf)> = snapshot
                 .files
                 .values()
@@ -184,7 +191,7 @@ impl Workspace {
         }
     }
 
-    fn build(&mut self) -> Arc<Snapshot> {
+    fn build(&mut self, progress: &Progress) -> Arc<Snapshot> {
         let inputs: Vec<build::FileInput> = self
             .texts
             .iter()
@@ -199,7 +206,7 @@ impl Workspace {
                 Some(build::FileInput { id: *id, path: path.clone(), root: root.clone(), source, origin })
             })
             .collect();
-        let snapshot = Arc::new(build::snapshot(inputs, &self.roots, self.last.as_deref()));
+        let snapshot = Arc::new(build::snapshot(inputs, &self.roots, self.last.as_deref(), progress));
         self.last = Some(snapshot.clone());
         snapshot
     }

@@ -1,0 +1,31 @@
+//! `scruple serve`: the language server, for editors.
+
+use std::path::PathBuf;
+
+use clap::Args;
+
+use super::{Ending, Trouble};
+use crate::server;
+
+/// Serve an editor over standard input and output (Language Server Protocol)
+#[derive(Debug, Args)]
+pub(super) struct Serve {
+    /// Append what the server does to this file
+    #[arg(long, value_name = "FILE")]
+    log: Option<PathBuf>,
+    /// Accepted because editors pass it; standard input and output are used anyway
+    #[arg(long, hide = true)]
+    stdio: bool,
+    /// Accepted because editors pass it; the process of `initialize` is watched
+    #[arg(long = "clientProcessId", value_name = "ID", hide = true)]
+    client_process_id: Option<u32>,
+}
+
+impl Serve {
+    pub fn run(&self) -> Result<Ending, Trouble> {
+        match server::run(self.log.as_deref()) {
+            Ok(code) => Ok(Ending::Code(code)),
+            Err(error) => Err(Trouble(format!("The server cannot start: {error}."))),
+        }
+    }
+}
