@@ -15,8 +15,12 @@ mod warning;
 mod state;
 mod trace;
 mod sensitivity;
+mod buffering;
+mod conductivity;
 pub mod targets;
 
+pub use buffering::BufferInterval;
+pub use conductivity::Conductivity;
 pub use activity::ActivityModel;
 pub use constants::{Constant, ConstantId, ConstantValue, REFERENCE_K};
 pub use database::{Chemistry, ChemistryBuilder, Component, ComponentId, Inconsistency, Interaction, Species, SpeciesId};

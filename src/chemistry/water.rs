@@ -1,4 +1,4 @@
-//! Properties of liquid water at 0.1 MPa between 0 °C and 100 °C: density, compressibility, permittivity, ionisation.
+//! Properties of liquid water at 0.1 MPa between 0 °C and 100 °C: density, compressibility, viscosity, permittivity, ionisation.
 
 /// Molar mass of water, kg/mol (IAPWS R11-07, table 2).
 pub const MOLAR_MASS_kg_per_mol: f64 = 0.018015268;
@@ -31,6 +31,15 @@ pub fn compressibility_per_Pa(temperature_K: f64) -> f64 {
     let numerator = 50.88496
         + t * (0.6163813 + t * (1.459187e-3 + t * (20.08438e-6 + t * (-58.47727e-9 + t * 410.4110e-12))));
     numerator / (1.0 + 19.67348e-3 * t) * 1e-11
+}
+
+/// Viscosity of the liquid at 0.1 MPa, Pa·s: IAPWS SR6-08(2011), equation for the viscosity, −20 °C to 110 °C.
+pub fn viscosity_Pa_s(temperature_K: f64) -> f64 {
+    let t = temperature_K / 300.0;
+    1e-6 * (280.68 * libm::pow(t, -1.9)
+        + 511.45 * libm::pow(t, -7.7)
+        + 61.131 * libm::pow(t, -19.6)
+        + 0.45903 * libm::pow(t, -40.0))
 }
 
 /// Static relative permittivity at the density of the liquid at 0.1 MPa: IAPWS R8-97 (Fernández et al. 1997).

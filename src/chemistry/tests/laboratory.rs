@@ -67,7 +67,7 @@ pub fn laboratory() -> Laboratory {
     let p1 = pKa(&mut b, "phosphoric acid", 2.148, -8000.0, -141.0);
     let (phosphate, po4) = acid(&mut b, "phosphate", -3, 94.971, &[p3, p2, p1]);
     let ac = pKa(&mut b, "acetic acid", 4.756, -410.0, -142.0);
-    let (acetate, _) = acid(&mut b, "acetate", -1, 59.044, &[ac]);
+    let (acetate, ac_species) = acid(&mut b, "acetate", -1, 59.044, &[ac]);
     let t = pKa(&mut b, "protonated Tris", 8.072, 47450.0, -59.0);
     let (tris, _) = acid(&mut b, "Tris", 0, 121.136, &[t]);
     let c3 = pKa(&mut b, "hydrogen citrate", 6.396, -3380.0, -254.0);
@@ -123,6 +123,12 @@ pub fn laboratory() -> Laboratory {
         (ChemistryBuilder::HYDROXIDE, -4.04),
     ] {
         b.set_molar_volume(species, volume);
+    }
+    // CRC Handbook of Chemistry and Physics, 'Ionic conductivity and diffusion at infinite dilution', 25 °C.
+    for (species, conductivity) in
+        [(na[0], 50.08), (k[0], 73.48), (cl[0], 76.31), (ca[0], 118.94), (ac_species[0], 40.9)]
+    {
+        b.set_molar_conductivity(species, conductivity);
     }
     let chemistry = b.finish().unwrap();
     Laboratory { chemistry, sodium, potassium, chloride, phosphate, acetate, tris, borate, citrate, calcium }

@@ -1,6 +1,8 @@
 //! Checks of the core against published values and against itself.
 
 mod activity;
+mod buffering;
+mod conductivity;
 mod laboratory;
 mod random;
 mod refusals;
