@@ -867,8 +867,12 @@ pub struct Partnered {
 pub struct Density {
     /// The density.
     pub value: Slot<Quantity>,
+    /// `± 0.002 g/mL`, where a certificate states it.
+    pub tolerance: Option<Tolerance>,
     /// At which temperature.
     pub at: Option<Slot<Quantity>>,
+    /// The parts (source).
+    pub parts: Vec<ConstantPart>,
 }
 
 /// `aqueous 36 % w/w, density 1.1789 g/mL at 20 °C`: a row of a substance's density table in water.
@@ -880,6 +884,8 @@ pub struct Aqueous {
     pub density: Slot<Quantity>,
     /// At which temperature.
     pub at: Option<Slot<Quantity>>,
+    /// The parts (source).
+    pub parts: Vec<ConstantPart>,
 }
 
 /// `solubility 35.9 g/L at 20 °C`.
