@@ -98,7 +98,7 @@ mod tests {
         #[test]
         fn lines_cover_the_text(text in "[a,#\\r\\n \u{2028}]{0,60}") {
             let lines = logical_lines(&text);
-            prop_assert_eq!(lines.concat(), text);
+            prop_assert_eq!(lines.concat(), text.as_str());
             prop_assert!(lines.iter().all(|line| !line.is_empty()));
         }
     }
