@@ -29,21 +29,28 @@ impl<'a> Found<'a> {
     }
 }
 
-/// Finds an ingredient. A bottle that bears its substance's name is the bottle where it is measured out as bought, and
-/// its substance where pure substance is meant.
+/// Finds an ingredient.
 pub fn ingredient<'a>(reference: &Reference, as_bought: bool, context: &Context<'a>) -> Result<Found<'a>, Refusal> {
-    let scope = context.scope;
-    let found = |definition| Ok(Found { definition });
     let pure_is_meant = !as_bought || reference.strength.is_some();
-    match scope.find(Namespace::Ingredient, &reference.key, &reference.text) {
+    match meaning(&reference.key, &reference.text, pure_is_meant, context.scope) {
+        Lookup::One(definition) => Ok(Found { definition }),
+        Lookup::Several(definitions) => Err(ambiguous(reference, &definitions).into()),
+        Lookup::Nothing => Err(unknown(reference, Namespace::Ingredient, context.scope).into()),
+    }
+}
+
+/// What an ingredient's name means. A bottle that bears its substance's name is the bottle where it is measured out as
+/// bought, and its substance where pure substance is meant.
+pub fn meaning<'a>(key: &NameKey, written: &str, pure_is_meant: bool, scope: &'a Scope) -> Lookup<'a> {
+    match scope.find(Namespace::Ingredient, key, written) {
         Lookup::One(definition) => {
             let is_bottle = definition.block.kind() == Some(BlockKind::Bottle);
             if is_bottle && pure_is_meant
-                && let Some(substance) = only_substance(scope.built_in.named(Namespace::Ingredient, &reference.key))
+                && let Some(substance) = only_substance(scope.built_in.named(Namespace::Ingredient, key))
             {
-                return found(substance);
+                return Lookup::One(substance);
             }
-            found(definition)
+            Lookup::One(definition)
         }
         Lookup::Several(definitions) => {
             // A substance of one's own and its bottle may share a name.
@@ -53,11 +60,11 @@ pub fn ingredient<'a>(reference: &Reference, as_bought: bool, context: &Context<
             };
             let wanted = if pure_is_meant { BlockKind::Substance } else { BlockKind::Bottle };
             match of_kind(wanted) {
-                (Some(one), None) if definitions.len() == 2 && of_kind(BlockKind::Solution).0.is_none() => found(one),
-                _ => Err(ambiguous(reference, &definitions).into()),
+                (Some(one), None) if definitions.len() == 2 && of_kind(BlockKind::Solution).0.is_none() => Lookup::One(one),
+                _ => Lookup::Several(definitions),
             }
         }
-        Lookup::Nothing => Err(unknown(reference, Namespace::Ingredient, scope).into()),
+        Lookup::Nothing => Lookup::Nothing,
     }
 }
 
