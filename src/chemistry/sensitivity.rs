@@ -6,8 +6,6 @@
 
 use std::collections::BTreeMap;
 
-use nalgebra::DVector;
-
 use super::{
     ConstantId, Mixture, State, debye_hueckel,
     equilibrium::newton::Linearisation,
@@ -20,24 +18,23 @@ use super::{
 pub struct Sensitivity<'a> {
     state: &'a State,
     /// ∂ ln a(H⁺)/∂(total of each balance), 1/mol.
-    to_totals: DVector<f64>,
+    to_totals: Vec<f64>,
     /// ∂ ln a(H⁺)/∂(ln K) of each species' formation.
-    to_formation: DVector<f64>,
+    to_formation: Vec<f64>,
 }
 
 impl<'a> Sensitivity<'a> {
     pub(super) fn new(state: &'a State) -> Self {
-        let (rows, columns) = state.system.counts.shape();
-        let solved = Self::adjoint(state);
-        let (to_totals, to_formation) = solved.unwrap_or((DVector::zeros(columns), DVector::zeros(rows)));
+        let nothing = || (vec![0.0; state.system.totals_mol.len()], vec![0.0; state.system.species.len()]);
+        let (to_totals, to_formation) = Self::adjoint(state).unwrap_or_else(nothing);
         Self { state, to_totals, to_formation }
     }
 
-    fn adjoint(state: &State) -> Option<(DVector<f64>, DVector<f64>)> {
+    fn adjoint(state: &State) -> Option<(Vec<f64>, Vec<f64>)> {
         let (system, point) = (&state.system, &state.point);
         let linear = Linearisation::new(system, point, &[])?;
-        let (to_totals, action) = linear.adjoint(system, point, 0)?;
-        Some((to_totals, -action))
+        let (to_totals, action) = linear.adjoint(system, point, 0);
+        Some((to_totals, action.iter().map(|x| -x).collect()))
     }
 
     /// ∂pH for a unit of this mixture added. It may bring components that the state has none of.

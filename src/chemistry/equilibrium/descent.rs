@@ -3,8 +3,7 @@
 //! With γ, the water activity and the free water fixed, the balances are the gradient of Φ(λ) = Σ mᵢ(λ) − Σ Tⱼ λⱼ in the logarithms λ of
 //! the free components. Φ is convex, so a damped Newton step that lowers it cannot go astray.
 
-use nalgebra::{DMatrix, DVector};
-
+use super::linear_algebra::{Matrix, dot, largest};
 use super::system::{Point, System};
 
 /// Relative residual at which Newton's method on the whole system takes over.
@@ -16,33 +15,32 @@ const STRIDE: f64 = 30.0;
 
 /// Brings the balances near zero; false if the steps run out.
 pub(crate) fn settle(system: &System, point: &mut Point, budget: &mut usize) -> bool {
-    let target = DVector::from_iterator(system.totals_mol.len(), system.totals_mol.iter().map(|t| t / point.water_kg));
+    let target: Vec<f64> = system.totals_mol.iter().map(|t| t / point.water_kg).collect();
     system.apply_mass_action(point);
     for _ in 0..STEPS {
-        let (sum, mut scale) = system.balances(&point.molality);
-        let gradient = sum - &target;
-        scale.zip_apply(&target, |s, t| *s = s.max(t.abs()));
-        if gradient.iter().zip(scale.iter()).all(|(g, s)| g.abs() <= NEAR * s) {
+        let (mut gradient, mut scale) = system.balances(&point.molality);
+        for ((g, s), t) in gradient.iter_mut().zip(&mut scale).zip(&target) {
+            *g -= t;
+            *s = s.max(t.abs());
+        }
+        if gradient.iter().zip(&scale).all(|(g, s)| g.abs() <= NEAR * s) {
             return true;
         }
         if *budget == 0 {
             return false;
         }
         *budget -= 1;
-        let Some(mut step) = newton_step(system, &point.molality, &gradient, &scale) else { return false };
-        let longest = step.amax();
+        let Some(step) = newton_step(system, &point.molality, &gradient, &scale) else { return false };
+        let longest = largest(&step);
         if !longest.is_finite() {
             return false;
         }
-        if longest > STRIDE {
-            step *= STRIDE / longest;
-        }
+        let mut share = if longest > STRIDE { STRIDE / longest } else { 1.0 };
         let before = potential(point, &target);
-        let descent = gradient.dot(&step);
+        let descent = dot(&gradient, &step);
         let start = point.ln_activity.clone();
-        let mut share = 1.0;
         for _ in 0..40 {
-            for ((x, from), by) in point.ln_activity.iter_mut().zip(&start).zip(step.iter()) {
+            for ((x, from), by) in point.ln_activity.iter_mut().zip(&start).zip(&step) {
                 *x = from + share * by;
             }
             system.apply_mass_action(point);
@@ -56,14 +54,9 @@ pub(crate) fn settle(system: &System, point: &mut Point, budget: &mut usize) -> 
 }
 
 /// −H⁻¹ g with the rows and columns of the Hessian brought to a common size.
-fn newton_step(
-    system: &System,
-    molality: &[f64],
-    gradient: &DVector<f64>,
-    scale: &DVector<f64>,
-) -> Option<DVector<f64>> {
+fn newton_step(system: &System, molality: &[f64], gradient: &[f64], scale: &[f64]) -> Option<Vec<f64>> {
     let size = gradient.len();
-    let mut hessian = DMatrix::<f64>::zeros(size, size);
+    let mut hessian = Matrix::zeros(size, size);
     for (row, m) in molality.iter().enumerate() {
         for &(j, count_j) in system.parts(row) {
             for &(k, count_k) in system.parts(row) {
@@ -71,23 +64,21 @@ fn newton_step(
             }
         }
     }
-    let root = DVector::from_fn(size, |j, _| libm::sqrt(hessian[(j, j)].max(1e-14 * scale[j])));
-    for j in 0..size {
-        for k in 0..size {
-            hessian[(j, k)] /= root[j] * root[k];
+    let root: Vec<f64> = (0..size).map(|j| libm::sqrt(hessian[(j, j)].max(1e-14 * scale[j]))).collect();
+    for (j, root_j) in root.iter().enumerate() {
+        for (entry, root_k) in hessian.row_mut(j).iter_mut().zip(&root) {
+            *entry /= root_j * root_k;
         }
         // A diagonal below one belongs to a balance that nothing answers to; it then moves little.
         hessian[(j, j)] = hessian[(j, j)].max(1.0);
     }
-    let mut step = DVector::from_fn(size, |j, _| -gradient[j] / root[j]);
-    if !hessian.lu().solve_mut(&mut step) {
-        return None;
-    }
-    step.component_div_assign(&root);
+    let mut step: Vec<f64> = gradient.iter().zip(&root).map(|(g, r)| -g / r).collect();
+    hessian.factor()?.solve(&mut step);
+    step.iter_mut().zip(&root).for_each(|(x, r)| *x /= r);
     Some(step)
 }
 
 /// Φ.
-fn potential(point: &Point, target: &DVector<f64>) -> f64 {
-    point.molality.iter().sum::<f64>() - target.iter().zip(&point.ln_activity).map(|(t, x)| t * x).sum::<f64>()
+fn potential(point: &Point, target: &[f64]) -> f64 {
+    point.molality.iter().sum::<f64>() - dot(target, &point.ln_activity)
 }

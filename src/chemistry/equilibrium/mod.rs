@@ -9,6 +9,7 @@
 pub(crate) mod action;
 pub(crate) mod descent;
 pub(crate) mod guess;
+pub(crate) mod linear_algebra;
 pub(crate) mod newton;
 pub(crate) mod system;
 

@@ -3,10 +3,9 @@
 //! Mass action: μᵢ − ln βᵢ − Σ aᵢⱼ λⱼ − wᵢ ln a_w(m) + ln γᵢ(m) = 0 with μ = ln m. Balances: W(m) Σ aᵢⱼ mᵢ − Tⱼ = 0. The first set is
 //! eliminated, so that the last linear system has one row for each component.
 
-use nalgebra::{DMatrix, DVector, Dyn, LU};
-
 use super::RESIDUAL;
 use super::action::Action;
+use super::linear_algebra::{Factors, Matrix, add_scaled, dot, largest};
 use super::system::{Point, System};
 
 /// Steps of one call.
@@ -19,116 +18,114 @@ const CALM: f64 = 1e-6;
 /// The linearised equations at a point.
 pub(crate) struct Linearisation {
     /// The laws of mass action.
-    pub action: Action,
+    action: Action,
     /// ∂(balance)/∂λ after elimination, divided by its size, factored.
-    pub jacobian: LU<f64, Dyn, Dyn>,
+    jacobian: Factors,
     /// Q⁻¹ A, and Q⁻¹ e in the last column.
-    response: DMatrix<f64>,
+    response: Matrix,
+    /// How the balances answer to each species.
+    answers: Answers,
+}
+
+/// ∂(balance)/∂μ, divided by the size of the balance.
+struct Answers {
     /// Size of each balance, mol.
-    pub scale_mol: DVector<f64>,
-    /// Sum of each balance, mol/kg.
-    sum_mol_per_kg: DVector<f64>,
+    scale_mol: Vec<f64>,
+    /// Sum of each balance divided by its size.
+    sum: Vec<f64>,
     /// Share of the water that is free.
     free_share: f64,
 }
 
-impl Linearisation {
-    /// Linearises the equations at a point, whose free water must be that of its molalities. `error` is e. `None` if singular.
-    pub fn new(system: &System, point: &Point, error: &[f64]) -> Option<Self> {
-        let (rows, columns) = system.counts.shape();
-        let action = Action::new(system, &point.molality);
-        let mut response = system.counts.clone().resize_horizontally(columns + 1, 0.0);
-        for (row, e) in error.iter().enumerate() {
-            response[(row, columns)] = *e;
+impl Answers {
+    fn new(system: &System, point: &Point) -> Self {
+        let (mut sum, mut scale_mol) = system.balances(&point.molality);
+        for ((size, sum), total) in scale_mol.iter_mut().zip(&mut sum).zip(&system.totals_mol) {
+            *size = (*size * point.water_kg).max(total.abs());
+            *sum *= point.water_kg / *size;
         }
-        if !action.solve(&mut response) {
-            return None;
-        }
-        let (sum_mol_per_kg, size) = system.balances(&point.molality);
-        let scale_mol =
-            DVector::from_fn(columns, |j, _| (size[j] * point.water_kg).max(system.totals_mol[j].abs()));
-        let free_share = point.water_kg / system.water_mol;
-        let mut result = Self {
-            action,
-            jacobian: DMatrix::zeros(0, 0).lu(),
-            response,
-            scale_mol,
-            sum_mol_per_kg,
-            free_share,
-        };
-        let mut jacobian = DMatrix::zeros(columns, columns);
-        for row in 0..rows {
-            result.each_balance(system, point, row, |j, share| {
-                for k in 0..columns {
-                    jacobian[(j, k)] += share * result.response[(row, k)];
-                }
-            });
-        }
-        result.jacobian = jacobian.lu();
-        Some(result)
+        Self { scale_mol, sum, free_share: point.water_kg / system.water_mol }
     }
 
-    /// Calls `f` with every balance that answers to ln m of a species, and the derivative divided by the size of the balance.
-    fn each_balance(&self, system: &System, point: &Point, row: usize, mut f: impl FnMut(usize, f64)) {
+    /// Calls `f` with every balance that answers to ln m of a species, and the derivative.
+    fn each(&self, system: &System, point: &Point, row: usize, mut f: impl FnMut(usize, f64)) {
         let amount_mol = point.molality[row] * point.water_kg;
         for &(column, count) in system.parts(row) {
             f(column, count * amount_mol / self.scale_mol[column]);
         }
         // Water that a species binds or releases changes all molalities.
-        let water = system.water[row] * self.free_share * amount_mol;
+        let water = system.water[row] * self.free_share * point.molality[row];
         if water != 0.0 {
-            for column in 0..self.scale_mol.len() {
-                f(column, -water * self.sum_mol_per_kg[column] / self.scale_mol[column]);
+            for (column, sum) in self.sum.iter().enumerate() {
+                f(column, -water * sum);
             }
         }
+    }
+}
+
+impl Linearisation {
+    /// Linearises the equations at a point, whose free water must be that of its molalities; `error` is e, none at a solution. `None` if
+    /// singular.
+    pub fn new(system: &System, point: &Point, error: &[f64]) -> Option<Self> {
+        let (rows, columns) = (system.counts.rows(), system.counts.columns());
+        let action = Action::new(system, &point.molality)?;
+        let mut response = Matrix::zeros(rows, columns + 1);
+        for row in 0..rows {
+            for &(column, count) in system.parts(row) {
+                response[(row, column)] += count;
+            }
+        }
+        for (row, e) in error.iter().enumerate() {
+            response[(row, columns)] = *e;
+        }
+        action.solve(&mut response);
+        let answers = Answers::new(system, point);
+        let mut jacobian = Matrix::zeros(columns, columns);
+        for row in 0..rows {
+            answers.each(system, point, row, |j, share| add_scaled(jacobian.row_mut(j), response.row(row), share));
+        }
+        Some(Self { action, jacobian: jacobian.factor()?, response, answers })
     }
 
     /// Whether the solution is a minimum of the Gibbs energy, as far as the signs of two determinants tell: the energy has as many downward
     /// directions as the mass balances forbid. Ions of high charge, and interaction coefficients beyond their range, can give solutions
     /// that are none.
     fn stable(&self) -> bool {
-        (self.jacobian.determinant() > 0.0) == (self.action.determinant() > 0.0)
+        self.jacobian.is_positive() == self.action.is_positive()
     }
 
-    /// The Newton step in λ and μ; `None` if singular.
-    fn step(&self, system: &System, point: &Point) -> Option<(DVector<f64>, DVector<f64>)> {
-        let (rows, columns) = system.counts.shape();
-        let mut step = DVector::from_fn(columns, |j, _| {
-            (system.totals_mol[j] - self.sum_mol_per_kg[j] * point.water_kg) / self.scale_mol[j]
-        });
+    /// The Newton step in λ and μ.
+    fn step(&self, system: &System, point: &Point) -> (Vec<f64>, Vec<f64>) {
+        let (rows, columns) = (system.counts.rows(), system.counts.columns());
+        let Answers { scale_mol, sum, .. } = &self.answers;
+        let mut step: Vec<f64> =
+            system.totals_mol.iter().zip(scale_mol).zip(sum).map(|((total, size), sum)| total / size - sum).collect();
         for row in 0..rows {
             let settled = self.response[(row, columns)];
-            self.each_balance(system, point, row, |j, share| step[j] += share * settled);
+            self.answers.each(system, point, row, |j, share| step[j] += share * settled);
         }
-        if !self.jacobian.solve_mut(&mut step) {
-            return None;
-        }
-        let mut change = DVector::from_fn(rows, |row, _| -self.response[(row, columns)]);
-        for column in 0..columns {
-            for row in 0..rows {
-                change[row] += self.response[(row, column)] * step[column];
-            }
-        }
-        Some((step, change))
+        self.jacobian.solve(&mut step);
+        let change = (0..rows)
+            .map(|row| {
+                let (by_activity, settled) = self.response.row(row).split_at(columns);
+                dot(by_activity, &step) - dot(settled, &[1.0])
+            })
+            .collect();
+        (step, change)
     }
 
     /// The weights of a row of the inverse of the whole system: those of the balances (1/mol), and of the laws of mass action.
-    pub fn adjoint(&self, system: &System, point: &Point, column: usize) -> Option<(DVector<f64>, DVector<f64>)> {
-        let (rows, columns) = system.counts.shape();
-        let mut weights = DVector::zeros(columns);
+    pub fn adjoint(&self, system: &System, point: &Point, column: usize) -> (Vec<f64>, Vec<f64>) {
+        let mut weights = vec![0.0; system.counts.columns()];
         weights[column] = 1.0;
-        if !super::action::solve_transposed(&self.jacobian, &mut weights) {
-            return None;
+        self.jacobian.solve_transposed(&mut weights);
+        let mut action = vec![0.0; system.counts.rows()];
+        for (row, entry) in action.iter_mut().enumerate() {
+            self.answers.each(system, point, row, |j, share| *entry += share * weights[j]);
         }
-        let mut action = DVector::zeros(rows);
-        for row in 0..rows {
-            self.each_balance(system, point, row, |j, share| action[row] += share * weights[j]);
-        }
-        if !self.action.solve_transposed(&mut action) {
-            return None;
-        }
-        weights.component_div_assign(&self.scale_mol);
-        Some((weights, action))
+        self.action.solve_transposed(&mut action);
+        weights.iter_mut().zip(&self.answers.scale_mol).for_each(|(weight, size)| *weight /= size);
+        (weights, action)
     }
 }
 
@@ -143,7 +140,7 @@ pub(crate) fn finish(system: &System, point: &mut Point, budget: &mut usize) -> 
         for (row, (e, x)) in error.iter_mut().zip(&point.ln_molality).enumerate() {
             *e = x - system.mass_action(point, row);
         }
-        if longest < CALM && error.iter().all(|e| e.abs() < RESIDUAL) && system.residual(point) < RESIDUAL {
+        if longest < CALM && largest(&error) < RESIDUAL && system.residual(point) < RESIDUAL {
             return stable;
         }
         if *budget == 0 {
@@ -152,19 +149,14 @@ pub(crate) fn finish(system: &System, point: &mut Point, budget: &mut usize) -> 
         *budget -= 1;
         let Some(linear) = Linearisation::new(system, point, &error) else { return false };
         stable = linear.stable();
-        let Some((step, change)) = linear.step(system, point) else { return false };
-        longest = change.amax().max(step.amax());
-        // `amax` passes over NaN; the sums do not.
-        if !(longest.is_finite() && step.sum().is_finite() && change.sum().is_finite()) {
+        let (step, change) = linear.step(system, point);
+        longest = largest(&change).max(largest(&step));
+        if !(longest.is_finite() && largest(&step).is_finite() && largest(&change).is_finite()) {
             return false;
         }
         let share = if longest > STRIDE { STRIDE / longest } else { 1.0 };
-        for (x, by) in point.ln_activity.iter_mut().zip(step.iter()) {
-            *x += share * by;
-        }
-        for (x, by) in point.ln_molality.iter_mut().zip(change.iter()) {
-            *x += share * by;
-        }
+        add_scaled(&mut point.ln_activity, &step, share);
+        add_scaled(&mut point.ln_molality, &change, share);
         point.exponentiate();
     }
     false

@@ -1,7 +1,6 @@
 //! The equations of one mixture at one temperature: which species can form, and how far a trial point is from equilibrium.
 
-use nalgebra::{DMatrix, DVector};
-
+use super::linear_algebra::{Matrix, dot};
 use crate::chemistry::{
     ActivityModel, Chemistry, ComponentId, Failure, Mixture, Species, SpeciesId, debye_hueckel,
     water::MOLAR_MASS_kg_per_mol as WATER_kg_per_mol,
@@ -20,7 +19,7 @@ pub(crate) struct System {
     /// Where the parts of each species end.
     ends: Vec<usize>,
     /// The same as a matrix: species in rows, balances in columns.
-    pub counts: DMatrix<f64>,
+    pub counts: Matrix,
     pub water: Vec<f64>,
     pub charge: Vec<f64>,
     /// ln of the overall formation constants.
@@ -103,7 +102,7 @@ impl System {
             components,
             parts: Vec::new(),
             ends: Vec::new(),
-            counts: DMatrix::zeros(0, 0),
+            counts: Matrix::zeros(0, 0),
             water: Vec::new(),
             charge: Vec::new(),
             ln_beta: Vec::new(),
@@ -121,7 +120,7 @@ impl System {
                 system.add_species(chemistry, id, &column_of, temperature_K);
             }
         }
-        system.counts = DMatrix::zeros(system.species.len(), system.totals_mol.len());
+        system.counts = Matrix::zeros(system.species.len(), system.totals_mol.len());
         for row in 0..system.species.len() {
             let (start, end) = system.bounds(row);
             for &(column, count) in &system.parts[start..end] {
@@ -213,8 +212,7 @@ impl System {
 
     /// Free water (kg) at these molalities; `None` if the species leave none.
     pub fn free_water_kg(&self, molality: &[f64]) -> Option<f64> {
-        let bound: f64 = self.water.iter().zip(molality).map(|(w, m)| w * m).sum();
-        let denominator = 1.0 + WATER_kg_per_mol * bound;
+        let denominator = 1.0 + WATER_kg_per_mol * dot(&self.water, molality);
         let water_kg = self.water_mol * WATER_kg_per_mol / denominator;
         (denominator > 0.0 && water_kg.is_finite() && water_kg > 0.0).then_some(water_kg)
     }
@@ -251,9 +249,9 @@ impl System {
     }
 
     /// Writes the sum of each balance, mol/kg, and the sum of the sizes of what takes part in it.
-    pub fn balances(&self, molality: &[f64]) -> (DVector<f64>, DVector<f64>) {
+    pub fn balances(&self, molality: &[f64]) -> (Vec<f64>, Vec<f64>) {
         let columns = self.totals_mol.len();
-        let (mut sum, mut size) = (DVector::zeros(columns), DVector::zeros(columns));
+        let (mut sum, mut size) = (vec![0.0; columns], vec![0.0; columns]);
         for (row, m) in molality.iter().enumerate() {
             for &(column, count) in self.parts(row) {
                 sum[column] += count * m;
@@ -268,7 +266,7 @@ impl System {
         let Some(water_kg) = self.free_water_kg(&point.molality) else { return f64::MAX };
         let (sum, size) = self.balances(&point.molality);
         let mut largest: f64 = 0.0;
-        for ((sum, size), total) in sum.iter().zip(size.iter()).zip(&self.totals_mol) {
+        for ((sum, size), total) in sum.iter().zip(&size).zip(&self.totals_mol) {
             let residual = (sum * water_kg - total).abs() / (size * water_kg).max(total.abs());
             if !residual.is_finite() {
                 return f64::MAX;
