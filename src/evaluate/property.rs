@@ -76,9 +76,17 @@ pub fn property_value(
             in_unit(amount, constituent, state, dimension, as_formula, context).ok_or_else(wrong)?
         }
         Property::Ph => return Err(wrong()),
-        Property::Osmolality
-        | Property::Conductivity
-        | Property::Alkalinity
+        Property::Osmolality => match dimension {
+            Some(Dimension::Osmolality) => state.osmolality_mol_per_kg(),
+            _ => return Err(wrong()),
+        },
+        Property::Conductivity => match dimension {
+            // An ion whose conductivity is not known would be left out of the sum without a word.
+            Some(Dimension::Conductivity) if state.conductivity().unknown_share < 0.01 => state.conductivity().value_S_per_m,
+            Some(Dimension::Conductivity) => return Err(PropertyValue::NotEvaluated(property.words())),
+            _ => return Err(wrong()),
+        },
+        Property::Alkalinity
         | Property::Hardness
         | Property::SaturationIndex(_) => return Err(PropertyValue::NotEvaluated(property.words())),
     })
