@@ -17,10 +17,11 @@ pub(super) const REPORTED_TWO_WAYS: &[(&str, &[&str])] = &[
 ];
 
 /// The other hydrates of a substance that are in scope: what gives the same and differs by water of crystallisation.
+///
+/// Isomers are no hydrates of each other. What gives no ions, as sugars do, is told apart by its name.
 pub(super) fn other_hydrates<'a>(case: &Case<'a>, definition: &Definition) -> Vec<&'a Definition> {
     let Body::Substance(substance) = &definition.block.body else { return Vec::new() };
     let Some((_, formula)) = &substance.formula else { return Vec::new() };
-    let skeleton = without_water(formula);
     let mut found: Vec<&Definition> = Vec::new();
     for (namespace, _, definitions) in case.context.scope.all() {
         if namespace != Namespace::Ingredient {
@@ -28,11 +29,12 @@ pub(super) fn other_hydrates<'a>(case: &Case<'a>, definition: &Definition) -> Ve
         }
         for other in definitions {
             let Body::Substance(candidate) = &other.block.body else { continue };
-            let Some((_, formula)) = &candidate.formula else { continue };
+            let Some((_, other_formula)) = &candidate.formula else { continue };
             if other.key != definition.key
                 && candidate.gives.len() == substance.gives.len()
-                && without_water(formula) == skeleton
+                && differ_by_water(formula, other_formula)
                 && same_gives(&candidate.gives, &substance.gives)
+                && (!substance.gives.is_empty() || is_named_after(definition.name(), other.name()))
                 && !found.iter().any(|known| known.key == other.key)
             {
                 found.push(other);
@@ -43,15 +45,22 @@ pub(super) fn other_hydrates<'a>(case: &Case<'a>, definition: &Definition) -> Ve
     found
 }
 
-/// Element counts without hydrogen and oxygen, in thousandths.
-fn without_water(formula: &crate::syntax::formula::Formula) -> Vec<(String, i64)> {
-    let mut counts: Vec<(String, i64)> = formula
-        .elements()
-        .filter(|(symbol, _)| !matches!(*symbol, "H" | "O"))
-        .map(|(symbol, count)| (symbol.to_string(), (1000.0 * count).round() as i64))
-        .collect();
-    counts.sort();
-    counts
+/// Whether two formulas differ by molecules of water and by nothing else.
+fn differ_by_water(one: &crate::syntax::formula::Formula, other: &crate::syntax::formula::Formula) -> bool {
+    let count = |formula: &crate::syntax::formula::Formula, wanted: &str| {
+        formula.elements().find(|(symbol, _)| *symbol == wanted).map_or(0.0, |(_, count)| count)
+    };
+    let waters = count(one, "O") - count(other, "O");
+    let hydrogens = count(one, "H") - count(other, "H");
+    let is_alike = |a: &crate::syntax::formula::Formula, b: &crate::syntax::formula::Formula| {
+        a.elements().all(|(symbol, n)| matches!(symbol, "H" | "O") || (n - count(b, symbol)).abs() < 1e-6)
+    };
+    waters.abs() > 1e-6 && (hydrogens - 2.0 * waters).abs() < 1e-6 && is_alike(one, other) && is_alike(other, one)
+}
+
+/// Whether one of two names is the other with more words behind it.
+fn is_named_after(one: &str, other: &str) -> bool {
+    one.starts_with(other) || other.starts_with(one)
 }
 
 fn same_gives(one: &[(f64, Reference)], other: &[(f64, Reference)]) -> bool {
@@ -116,9 +125,9 @@ pub(super) fn hydrate_not_stated(case: &Case, findings: &mut Vec<Finding>) {
         .help("Write which form is weighed.")
         .about(addition.what.key.as_str())
         .fix(Fix::replace(
-            format!("Write anhydrous {}", addition.what.text),
+            format!("Write anhydrous {}", definition.name()),
             addition.what.at,
-            format!("anhydrous {}", addition.what.text),
+            format!("anhydrous {}", definition.name()),
         ));
         for hydrate in hydrates {
             finding = finding.fix(Fix::replace(
