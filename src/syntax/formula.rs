@@ -236,7 +236,10 @@ impl Reader<'_> {
                     self.at += 2;
                     Ok(*symbol)
                 }
-                None => Err(self.error("This is the symbol of no element.")),
+                None => {
+                    let wrong = self.error("This is the symbol of no element.");
+                    Err(FormulaError { span: Span::new(wrong.span.start, wrong.span.end + 1), ..wrong })
+                }
             };
         }
         let one = first.map(String::from).unwrap_or_default();

@@ -3,6 +3,7 @@
 mod blocks;
 mod build;
 mod characters;
+mod format;
 pub mod formula;
 mod grammar;
 mod number;
@@ -14,6 +15,7 @@ use std::collections::HashMap;
 use std::sync::Arc;
 
 pub use blocks::Block;
+pub use format::{format, format_line, format_tree};
 use tree::{Line, Placed, Tree};
 
 /// The tree of a text. Every text has one: what cannot be read is a fault of its line and of no other.

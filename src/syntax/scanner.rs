@@ -23,7 +23,7 @@ pub(super) fn logical_lines(text: &str) -> Vec<&str> {
         }
         start = line_start;
         end = line_end;
-        continuable = can_be_continued(content.trim_start_matches('\u{FEFF}'));
+        continuable = can_be_continued(content.trim_start_matches('\u{FEFF}').trim_start_matches(is_space));
     }
     if end > start {
         lines.push(text.get(start..end).unwrap_or_default());

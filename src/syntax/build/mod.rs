@@ -22,6 +22,7 @@ use super::scanner::is_space;
 use super::tree::*;
 use crate::text::Span;
 
+pub(super) use junk::{FIRST_WORDS, MORE_FIRST_WORDS};
 pub(super) use names::{can_stand_bare, quoted};
 
 /// A node of pest's tree.

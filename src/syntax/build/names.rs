@@ -88,6 +88,14 @@ impl<'t> Builder<'t> {
     pub(super) fn definition(&mut self, node: &Node<'t>) -> Slot<Name> {
         let place = span(node);
         let written = self.of(place);
+        let built_in = " instead of the built-in";
+        if let Some(name) = written.strip_suffix(built_in).filter(|name| !name.starts_with('"')) {
+            // The words are a statement of their own.
+            let words = Span::new(place.start + name.len() + 1, place.end);
+            self.token(TokenKind::Bad, words);
+            self.fault_with(words, FaultKind::Unexpected, vec![reading(words, "", "on a line of its own below")]);
+            return self.name_at(Span::new(place.start, words.start - 1), TokenKind::Definition);
+        }
         let is_quoted = written.len() >= 2 && written.starts_with('"') && written.ends_with('"');
         if !is_quoted && ends_before_its_end(written) {
             self.token(TokenKind::Definition, place);

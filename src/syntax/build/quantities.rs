@@ -285,12 +285,24 @@ impl<'t> Builder<'t> {
         let is_word = written.chars().count() >= 4 && written.chars().all(|letter| letter.is_alphabetic() || letter == '-');
         let is_apart = span(&number).end < span(&unit).start;
         let unknown = Unit::parse(written).is_none() && wrong_unit(written).is_none() && !is_disguised_unit(written);
-        (is_word && is_apart && unknown).then(|| (span(&number), span(&unit).start))
+        let is_ratio = self.of(span(&number)).contains(':');
+        ((is_word || is_ratio) && is_apart && unknown).then(|| (span(&number), span(&unit).start))
     }
 
     /// Reports a number that has no unit because a name follows it.
     pub(super) fn number_without_unit(&mut self, number: Span) {
-        if self.number_at(number, false).is_some() {
+        if let Some((one, many)) = self.of(number).split_once(':')
+            && let (Ok(one), Ok(many)) = (one.parse::<f64>(), many.parse::<f64>())
+            && one < many
+        {
+            let share = |whole: f64| format!("{} mL/L", crate::units::format::significant(1000.0 * one / whole, 3));
+            let readings = vec![
+                reading(number, share(many), "one volume in so many altogether"),
+                reading(number, share(one + many), "one volume and so many of water"),
+            ];
+            self.token(TokenKind::Bad, number);
+            self.fault_with(number, FaultKind::OneInHowMany, readings);
+        } else if self.number_at(number, false).is_some() {
             self.unit_missing(number);
         }
     }

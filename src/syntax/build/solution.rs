@@ -85,6 +85,10 @@ impl<'t> Builder<'t> {
         let start = self.after_spaces(span(node).start);
         let place = Span::new(start, span(node).end);
         self.token(TokenKind::Bad, place);
+        if matches!(name, Slot::Bad(_)) {
+            // The name's own fault comes first: with its reading the line may be a pair.
+            return;
+        }
         let mut readings = Vec::new();
         if let Slot::Given(name) = name
             && !name.quoted

@@ -197,6 +197,11 @@ impl<'t> Builder<'t> {
     }
 
     fn between(&mut self, from: &Node<'t>, to: &Node<'t>, property: &PropertyKind) -> Option<Range> {
+        if wanted(property).is_some() && !has(from, Rule::unit) && !has(to, Rule::unit) {
+            // One fault, at the bound that should carry the unit of both.
+            let _ = self.bound_without_unit(from, property);
+            return self.bound(to, property, None).map(Range::Exactly);
+        }
         let high = self.bound(to, property, None);
         let low = match &high {
             Some(high) if !has(from, Rule::unit) => self.bound(from, property, high.unit),

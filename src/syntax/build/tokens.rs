@@ -9,7 +9,7 @@ const CAPITALS: [&str; 7] = ["pH", "CAS", "pKa", "K", "Ksp", "A", "T"];
 impl Builder<'_> {
     /// Covers what no token covers yet, and asks for the written form of every keyword in another letter case.
     pub(super) fn fill_tokens(&mut self) {
-        self.tokens.sort_by_key(|token| (token.span.start, token.span.end));
+        self.drop_covered_tokens();
         let mut found = Vec::new();
         let mut at = 0;
         for token in &self.tokens {
@@ -25,6 +25,18 @@ impl Builder<'_> {
             }
         }
         self.tokens.extend(found);
+        self.tokens.sort_by_key(|token| (token.span.start, token.span.end));
+    }
+
+    /// Where unreadable text was found to hold readable parts, the larger token speaks for them.
+    fn drop_covered_tokens(&mut self) {
+        self.tokens.sort_by_key(|token| (token.span.start, std::cmp::Reverse(token.span.end)));
+        let mut end = 0;
+        self.tokens.retain(|token| {
+            let stays = token.span.is_empty() || token.span.start >= end;
+            end = if stays { end.max(token.span.end) } else { end };
+            stays
+        });
         self.tokens.sort_by_key(|token| (token.span.start, token.span.end));
     }
 
