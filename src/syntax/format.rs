@@ -64,7 +64,18 @@ fn cannot_be_laid_out(line: &Line) -> bool {
     hidden
         || !is_white(line.text.get(at..).unwrap_or("?"))
         || line.tokens.iter().any(|token| token.kind == TokenKind::Bad)
-        || line.faults.iter().any(|fault| matches!(fault.kind, FaultKind::InvisibleCharacter(_) | FaultKind::BadName))
+        || line.faults.iter().any(|fault| {
+            let harmless = matches!(
+                fault.kind,
+                FaultKind::WrittenForm
+                    | FaultKind::Missing(_)
+                    | FaultKind::OutOfBounds(_)
+                    | FaultKind::RangeDoesNotRise
+                    | FaultKind::MisplacedQualifier
+                    | FaultKind::LookAlikeLetter { .. }
+            );
+            !harmless
+        })
 }
 
 fn is_white(gap: &str) -> bool {
