@@ -83,6 +83,7 @@ pub const RULES: &[Rule] = &[
     stocks::dilution_shift,
     stocks::salt_shift,
     stocks::strength_density_disagree,
+    stocks::stock_found,
     setting::liquid_counted_in,
     setting::moves_after_setting,
     setting::about_differs,

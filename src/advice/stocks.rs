@@ -333,3 +333,43 @@ fn taken_substance<'a>(case: &Case<'a>, reference: &Reference) -> Option<&'a Def
         .flat_map(|names| names.named(Namespace::Ingredient, &reference.key))
         .find(|definition| definition.block.kind() == Some(BlockKind::Substance))
 }
+
+/// Says which bottle or solution stands for a strength and a name.
+pub(super) fn stock_found(case: &Case, findings: &mut Vec<Finding>) {
+    let Some(recipe) = case.recipe() else { return };
+    let Some(outcome) = case.outcomes().next() else { return };
+    for line in &outcome.lines {
+        let reference = match recipe.entries.get(line.entry).map(|entry| &entry.action) {
+            Some(Action::Add(addition)) => &addition.what,
+            Some(Action::MakeUp(make_up)) => match &make_up.alternative {
+                // Of two titrants the one that was used.
+                Some(other) if line.name == other.text => other,
+                _ => &make_up.what,
+            },
+            _ => continue,
+        };
+        let Some(strength) = reference.strength else { continue };
+        let found = case.context.scope.own.named(Namespace::Ingredient, &line.definition.name);
+        let Some(definition) = found.iter().find(|definition| definition.key == line.definition) else { continue };
+        if matches!(strength.kind, StrengthKind::Concentration(_))
+            && matches!(definition.block.kind(), Some(BlockKind::Solution | BlockKind::Bottle))
+            && definition.key.name != reference.key
+        {
+            findings.push(
+                Finding::new(
+                    Code::StockFound,
+                    Anchor::new(reference.at.line, strength.span.to(reference.at.span)),
+                    format!("{} is just that, and is taken.", definition.name()),
+                )
+                .help("Write its name to say so.")
+                .related_at(crate::evaluate::place_of(definition), format!("{} is defined here", definition.name()))
+                .about(reference.key.as_str())
+                .fix(crate::finding::Fix::replace(
+                    format!("Write {}", definition.name()),
+                    Anchor::new(reference.at.line, strength.span.to(reference.at.span)),
+                    crate::evaluate::written_form(definition.name()),
+                )),
+            );
+        }
+    }
+}

@@ -2,7 +2,7 @@
 
 use std::sync::Arc;
 
-use super::names::{Found, written_form};
+use super::names::{self, Found, written_form};
 use super::{Context, Outcome, Refusal, Solute, ingredient_has_no_value};
 use crate::chemistry::{Mixture, State};
 use crate::finding::{Code, Finding};
@@ -55,6 +55,42 @@ impl Goods {
     }
 }
 
+/// How near the strength of a bottle or solution must be to the strength that is written before a name.
+const SAME_STRENGTH: f64 = 0.005;
+
+/// Whether the one substance of a stock has this strength.
+fn has_strength(outcome: &Outcome, strength: &Amount) -> bool {
+    let [solute] = outcome.solutes.as_slice() else { return false };
+    let value = match strength.dimension() {
+        Dimension::AmountConcentration => solute.amount_mol.map(|amount| amount / outcome.volume_L),
+        Dimension::Molality => solute.amount_mol.map(|amount| amount / outcome.water_kg),
+        Dimension::MassConcentration => Some(1000.0 * solute.mass_kg / outcome.volume_L),
+        Dimension::MassFraction => Some(solute.mass_kg / outcome.mass_kg),
+        _ => None,
+    };
+    value.is_some_and(|value| (value / strength.value - 1.0).abs() <= SAME_STRENGTH)
+}
+
+/// The finding for a strength that several bottles or solutions have.
+fn which_bottle(reference: &Reference, stocks: &[&crate::model::Definition]) -> Finding {
+    let names: Vec<&str> = stocks.iter().map(|stock| stock.name()).collect();
+    let from_strength = reference.strength.map_or(reference.at.span, |strength| strength.span.to(reference.at.span));
+    let at = crate::finding::Anchor::new(reference.at.line, from_strength);
+    let mut finding = Finding::new(
+        Code::WhichBottle,
+        at,
+        format!("{} are all {} of this strength.", names.join(", "), reference.text),
+    )
+    .help("Name the one that is taken.")
+    .about(reference.key.as_str());
+    for stock in stocks {
+        finding = finding
+            .fix(crate::finding::Fix::replace(format!("Write {}", stock.name()), at, written_form(stock.name())))
+            .related_at(names::place_of(stock), format!("{} is defined here", stock.name()));
+    }
+    finding
+}
+
 /// The goods that a reference means. `qualifiers` may give a density, purity and water.
 pub fn goods(
     reference: &Reference,
@@ -68,6 +104,12 @@ pub fn goods(
         (Some(substance), None) => pure(reference, found, substance, qualifiers, context)?,
         (Some(substance), Some(strength)) => match strength.kind {
             StrengthKind::Concentration(amount) => {
+                let is_it = |outcome: &Outcome| has_strength(outcome, &amount);
+                match names::stocks_of_strength(reference, found, is_it, context).as_slice() {
+                    [] => {}
+                    [one] => return stock(reference, &Found { definition: one }, temperature_K, context),
+                    several => return Err(which_bottle(reference, several).into()),
+                }
                 ideal_solution(reference, found, substance, &amount, stated_density, temperature_K, context)?
             }
             StrengthKind::Ratio { of_it, of_water } => {

@@ -15,7 +15,7 @@ mod verdicts;
 use std::sync::Arc;
 
 pub use goods::{Goods, Stock, table_density};
-pub use names::{Found, comes_in_strengths, listed, meaning, place_of, written_form};
+pub use names::{Found, comes_in_strengths, is_plain_stock_of, listed, meaning, place_of, written_form};
 pub use outcome::*;
 pub use property::{PropertyValue, as_formula_factor, key_element, property_value};
 pub use refusal::Refusal;

@@ -170,6 +170,52 @@ pub fn suggestions(key: &NameKey, namespace: Namespace, scope: &Scope) -> Vec<St
     near.into_iter().map(|(_, name)| name).take(3).collect()
 }
 
+/// Whether a bottle or solution is plainly one substance in water: candidates for what a strength before a name means.
+/// Solutions that are themselves made from a strength are left out, so that none can wait for the other.
+pub fn is_plain_stock_of(block: &Block, name: &NameKey) -> bool {
+    let Some(recipe) = block.recipe() else { return false };
+    let mut solutes = recipe.entries.iter().filter_map(|entry| match &entry.action {
+        Action::Add(addition) => Some((&addition.what, addition.amounts.len())),
+        Action::MakeUp(make_up) => Some((&make_up.what, make_up.goals.len())),
+        _ => None,
+    });
+    let only_lines = recipe.entries.iter().all(|entry| matches!(entry.action, Action::Add(_) | Action::MakeUp(_) | Action::Found { .. }));
+    let mut has_it = false;
+    only_lines
+        && recipe.like.is_none()
+        && solutes.all(|(what, amounts)| {
+            has_it |= what.key == *name;
+            amounts == 1 && what.strength.is_none() && (what.key == *name || what.key.as_str().contains("water"))
+        })
+        && has_it
+}
+
+/// The bottles and solutions in scope that are just this substance at this strength.
+pub fn stocks_of_strength<'a>(
+    reference: &Reference,
+    found: &Found,
+    matches: impl Fn(&super::Outcome) -> bool,
+    context: &Context<'a>,
+) -> Vec<&'a Definition> {
+    let mut stocks: Vec<&Definition> = Vec::new();
+    for (namespace, _, definitions) in context.scope.own.all() {
+        for definition in definitions.iter().filter(|_| namespace == Namespace::Ingredient) {
+            if !is_plain_stock_of(&definition.block, &reference.key) || stocks.iter().any(|known| known.key == definition.key) {
+                continue;
+            }
+            let Some(outcome) = (context.stocks)(&definition.key).and_then(|evaluation| evaluation.outcome().cloned()) else {
+                continue;
+            };
+            let is_only_it = matches!(outcome.solutes.as_slice(), [solute] if solute.definition == found.definition.key);
+            if is_only_it && matches(&outcome) {
+                stocks.push(definition);
+            }
+        }
+    }
+    stocks.sort_by(|one, other| one.key.cmp(&other.key));
+    stocks
+}
+
 /// Looks up every name of a recipe, and reports those that cannot be found.
 pub fn report_all(recipe: &Recipe, context: &Context, findings: &mut Vec<Finding>) {
     let mut look = |reference: &Reference| {

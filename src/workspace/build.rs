@@ -382,6 +382,8 @@ struct Node {
     file: FileId,
     block: usize,
     meanings: Vec<Vec<Definition>>,
+    /// Stocks that a strength before a name may mean.
+    implied: Vec<Definition>,
     needs: Vec<usize>,
     /// The references that lead to each needed node, for the cycle's places.
     leads: Vec<(usize, Anchor, String)>,
@@ -438,7 +440,7 @@ fn nodes(snapshot: &Snapshot) -> Vec<Node> {
         let scope = snapshot.scopes.get(&file.id);
         for (index, block) in file.model.blocks.iter().enumerate() {
             let mut node =
-                Node { file: file.id, block: index, meanings: Vec::new(), needs: Vec::new(), leads: Vec::new(), is_open: false };
+                Node { file: file.id, block: index, meanings: Vec::new(), implied: Vec::new(), needs: Vec::new(), leads: Vec::new(), is_open: false };
             for reference in references(block) {
                 let meaning: Vec<Definition> = match scope.map(|scope| scope.find(Namespace::Ingredient, &reference.key, &reference.text)) {
                     Some(Lookup::One(definition)) => vec![definition.clone()],
@@ -447,6 +449,20 @@ fn nodes(snapshot: &Snapshot) -> Vec<Node> {
                 };
                 node.is_open |= meaning.is_empty();
                 node.meanings.push(meaning);
+                // A strength before a name may mean a stock that is just that.
+                if reference.strength.is_some()
+                    && let Some(scope) = scope
+                {
+                    let stocks = scope.own.all().filter(|(namespace, ..)| *namespace == Namespace::Ingredient);
+                    let mut stocks: Vec<Definition> = stocks
+                        .flat_map(|(.., definitions)| definitions)
+                        .filter(|definition| !Arc::ptr_eq(&definition.block, block))
+                        .filter(|definition| evaluate::is_plain_stock_of(&definition.block, &reference.key))
+                        .cloned()
+                        .collect();
+                    stocks.sort_by(|one, other| one.key.cmp(&other.key));
+                    node.implied.extend(stocks);
+                }
             }
             // Findings on definitions look at the names around them.
             node.is_open |= !matches!(block.body, Body::Solution(_) | Body::Bottle(_));
@@ -472,6 +488,13 @@ fn link_nodes(snapshot: &Snapshot, nodes: &mut [Node]) {
         let block = snapshot.files.get(&node.file).and_then(|file| file.model.blocks.get(node.block));
         let Some(block) = block else { continue };
         let own_kind = block.kind();
+        for definition in &node.implied {
+            if let Some(needed) = by_key.get(&(definition.key.file, definition.key.name.clone()))
+                && !node.needs.contains(needed)
+            {
+                node.needs.push(*needed);
+            }
+        }
         for (reference, meaning) in references(block).into_iter().zip(&node.meanings) {
             for definition in meaning {
                 // A bottle that bears its substance's name holds the substance, not itself.
