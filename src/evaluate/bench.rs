@@ -62,7 +62,7 @@ pub(super) fn evaluate(
     let bench = Bench { plan: &plan, temperature_K, context };
     bench.has_extent(block)?;
     let mut unknowns = vec![0.0; plan.len()];
-    let run = bench.meet_finished_goals(&mut unknowns, 0)?;
+    let run = bench.meet_finished_goals(&mut unknowns)?;
     let mut outcome = bench.outcome(run, half_width_K);
     for entry in &recipe.entries {
         if let Action::Found { what, strength, .. } = &entry.action {
@@ -70,6 +70,16 @@ pub(super) fn evaluate(
         }
     }
     verdicts(recipe, outcome, context, findings)
+}
+
+/// A goal of the finished solution, and the planned line whose amount meets it.
+struct Sought<'b> {
+    number: usize,
+    line: &'b Planned,
+    goal: &'b Goal,
+    property: &'b Property,
+    aim: f64,
+    is_pair: bool,
 }
 
 struct Bench<'a, 'b> {
@@ -116,56 +126,122 @@ impl Bench<'_, '_> {
         Ok(())
     }
 
-    /// Finds the amounts that only the finished solution can tell (pairs, properties), one inside the other.
-    fn meet_finished_goals(&self, unknowns: &mut [f64], from: usize) -> Result<Run, Refusal> {
-        let next = self.plan.iter().enumerate().skip(from).find(|(_, line)| matches!(line.work, Work::Pair { .. } | Work::Adjust { .. }));
-        let Some((number, line)) = next else { return self.settle(unknowns) };
-        let goal = match &line.work {
-            Work::Pair { goal, .. } | Work::Adjust { goal, .. } => goal,
-            _ => return self.settle(unknowns),
-        };
-        let is_pair = matches!(line.work, Work::Pair { .. });
-        let GoalKind::Property { property, aim, .. } = &goal.kind else {
-            return Err(Finding::new(Code::Unreadable, goal.at, "A pair is split to meet a property, not a volume or mass.")
-                .help("Write the pH, or another property, that the finished solution must have.")
-                .into());
-        };
-        let miss = |x: f64, unknowns: &mut [f64]| -> Result<f64, Refusal> {
+    /// Finds the amounts that only the finished solution can tell (pairs, properties), all together.
+    fn meet_finished_goals(&self, unknowns: &mut [f64]) -> Result<Run, Refusal> {
+        let mut sought = Vec::new();
+        for (number, line) in self.plan.iter().enumerate() {
+            let (Work::Pair { goal, .. } | Work::Adjust { goal, .. }) = &line.work else { continue };
+            let GoalKind::Property { property, aim, .. } = &goal.kind else {
+                return Err(Finding::new(Code::Unreadable, goal.at, "A pair is split to meet a property, not a volume or mass.")
+                    .help("Write the pH, or another property, that the finished solution must have.")
+                    .into());
+            };
+            let is_pair = matches!(line.work, Work::Pair { .. });
+            sought.push(Sought { number, line, goal, property, aim: *aim, is_pair });
+        }
+        if sought.is_empty() {
+            return self.settle(unknowns);
+        }
+        // One after the other, and again until none moves the others: they are coupled by the ionic strength only.
+        let mut last = vec![f64::NAN; sought.len()];
+        for round in 0..MAX_ROUNDS {
+            let mut moved = 0.0f64;
+            for (one, last) in sought.iter().zip(last.iter_mut()) {
+                let guess = if last.is_finite() { Some(*last) } else { None };
+                let x = self.meet(one, guess, unknowns)?;
+                moved = moved.max(if last.is_finite() { (x - *last).abs() / x.abs().max(1e-12) } else { f64::INFINITY });
+                *last = x;
+            }
+            if sought.len() == 1 || moved < 1e-12 || (round > 20 && moved < 1e-9) {
+                return self.settle(unknowns);
+            }
+        }
+        let at = sought.first().map_or(Anchor::default(), |one| one.line.at);
+        Err(Finding::new(Code::NoSolutionFound, at, "The amounts that the finished solution must have work against each other.")
+            .help("Drop one of the targets.")
+            .into())
+    }
+
+    /// Meets one goal of the finished solution while the other unknowns stay. `guess` is where it was met before.
+    fn meet(&self, one: &Sought, guess: Option<f64>, unknowns: &mut [f64]) -> Result<f64, Refusal> {
+        let Sought { number, line, goal, property, aim, is_pair } = *one;
+        let mut miss = |x: f64| -> Result<f64, Refusal> {
             if let Some(slot) = unknowns.get_mut(number) {
                 *slot = x;
             }
-            let run = self.meet_finished_goals(unknowns, number + 1)?;
+            let run = self.settle(unknowns)?;
             Ok(self.value(&run.beaker.mixture, goal, property, line.at)? - aim)
         };
-        let at_zero = miss(0.0, unknowns)?;
-        if is_pair {
-            let at_one = miss(1.0, unknowns)?;
-            if at_zero.abs() > PH_TOLERANCE && at_one.abs() > PH_TOLERANCE && (at_zero > 0.0) == (at_one > 0.0) {
-                return Err(self.pair_out_of_reach(line, goal, property, aim + at_zero, aim + at_one));
+        let x = if is_pair {
+            match guess.map(|guess| self.bracket(&mut miss, guess, 1.0)).transpose()?.flatten() {
+                Some((low, high)) => self.root(&mut miss, low, high, 1e-14, line.at)?,
+                None => {
+                    let (at_zero, at_one) = (miss(0.0)?, miss(1.0)?);
+                    if at_zero.abs() > PH_TOLERANCE && at_one.abs() > PH_TOLERANCE && (at_zero > 0.0) == (at_one > 0.0) {
+                        return Err(self.pair_out_of_reach(line, goal, property, aim + at_zero, aim + at_one));
+                    }
+                    self.root(&mut miss, 0.0, 1.0, 1e-14, line.at)?
+                }
             }
-            self.root(|x| miss(x, unknowns), 0.0, 1.0, 1e-13, line.at)?;
         } else {
+            let at_zero = miss(0.0)?;
             if at_zero > 1e-12 * aim.abs() {
                 return Err(self.already_passed(goal, property, aim + at_zero));
             }
-            // Starting from what the beaker weighs without it, steps grow until the goal is passed.
-            let scale = unknowns.len().max(1) as f64 * self.settle(unknowns)?.beaker.kilograms.max(1e-9);
-            let (mut low, mut high) = (0.0, 1e-6 * scale);
-            let mut reached = aim + at_zero;
-            loop {
-                let at_high = miss(high, unknowns)?;
-                reached = if at_high.is_finite() { aim + at_high } else { reached };
-                if at_high >= 0.0 {
-                    break;
+            let scale = self.plan_mass();
+            let bracket = guess.map(|guess| self.bracket(&mut miss, guess, f64::INFINITY)).transpose()?.flatten();
+            let (low, high) = match bracket {
+                Some(bracket) => bracket,
+                None => {
+                    let (mut low, mut high, mut reached) = (0.0, 1e-5 * scale, aim + at_zero);
+                    loop {
+                        let at_high = miss(high)?;
+                        reached = if at_high.is_finite() { aim + at_high } else { reached };
+                        if at_high >= 0.0 {
+                            break (low, high);
+                        }
+                        // The property grows nearly in step with the amount, so two points tell where to look next.
+                        let slope = (at_high - at_zero) / high;
+                        let next = if slope > 0.0 { -at_zero / slope * 1.02 } else { f64::INFINITY };
+                        (low, high) = (high, next.clamp(2.0 * high, 1000.0 * high));
+                        if high > MOST_TITRANT * scale {
+                            return Err(self.adjust_out_of_reach(goal, property, reached));
+                        }
+                    }
                 }
-                (low, high) = (high, 4.0 * high);
-                if high > MOST_TITRANT * scale {
-                    return Err(self.adjust_out_of_reach(goal, property, reached));
-                }
+            };
+            self.root(&mut miss, low, high, 1e-14 * high, line.at)?
+        };
+        miss(x)?;
+        Ok(x)
+    }
+
+    /// A narrow bracket around a guess, widened until the sign changes; none where it does not.
+    fn bracket(
+        &self,
+        miss: &mut impl FnMut(f64) -> Result<f64, Refusal>,
+        guess: f64,
+        most: f64,
+    ) -> Result<Option<(f64, f64)>, Refusal> {
+        let mut width = 1e-6;
+        for _ in 0..6 {
+            let (low, high) = (guess * (1.0 - width), (guess * (1.0 + width)).min(most));
+            let (at_low, at_high) = (miss(low)?, miss(high)?);
+            if (at_low > 0.0) != (at_high > 0.0) {
+                return Ok(Some((low, high)));
             }
-            self.root(|x| miss(x, unknowns), low, high, 1e-15 * scale, line.at)?;
+            width *= 30.0;
+            if width > 0.9 {
+                break;
+            }
         }
-        self.meet_finished_goals(unknowns, number + 1)
+        Ok(None)
+    }
+
+    /// About how much the recipe comes to, kg.
+    fn plan_mass(&self) -> f64 {
+        let parts = self.plan.last().map_or(0, |line| line.part);
+        self.first_guess(parts).kilograms.max(1e-9)
     }
 
     fn root(
@@ -210,7 +286,7 @@ impl Bench<'_, '_> {
                 })
                 .fold(0.0, f64::max);
             // Rounding keeps the last digits moving; once they no longer settle further they are as good as they get.
-            if !depends || change < 1e-13 || (change < 1e-10 && change >= last_change) {
+            if !depends || change < 1e-12 || (change < 1e-9 && change >= last_change) {
                 return Ok(run);
             }
             last_change = change;
@@ -325,7 +401,7 @@ impl Bench<'_, '_> {
                     filled.add(&goods.per_kg, mass);
                     let miss = litres - self.volume(&filled, at)?;
                     let next = (mass + miss * density).max(0.0);
-                    if (next - mass).abs() <= 1e-14 * litres.max(mass) || next == mass {
+                    if (next - mass).abs() <= 1e-12 * litres {
                         return Ok(next);
                     }
                     mass = next;
@@ -429,7 +505,7 @@ impl Bench<'_, '_> {
                 _ => return Err(self.out_of_reach(line, goal, titrant, before, aim, furthest)),
             }
         }
-        let mass = self.root(miss, low, high, 1e-16 * scale, line.at)?;
+        let mass = self.root(miss, low, high, 1e-13 * high, line.at)?;
         let state = self.state(&with(titrant, mass)?, line.at)?;
         Ok((which, mass, point(state)))
     }

@@ -364,7 +364,7 @@ fn share_at(
     for _ in 0..60 {
         let Some(density) = density_at(share.clamp(0.0, 1.0)) else { break };
         let next = grams_per_litre / density;
-        if (next - share).abs() < 1e-13 {
+        if (next - share).abs() < 1e-11 {
             return Ok(next);
         }
         share = next;
