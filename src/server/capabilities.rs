@@ -2,15 +2,19 @@
 
 use camino::Utf8PathBuf;
 use serde_json::{Map, Value, json};
-use tower_lsp::lsp_types::{
-    ClientCapabilities, InitializeParams, MarkupKind, OneOf, PositionEncodingKind, SaveOptions, ServerCapabilities,
-    TextDocumentSyncCapability, TextDocumentSyncKind, TextDocumentSyncOptions, TextDocumentSyncSaveOptions,
-    WorkspaceFoldersServerCapabilities, WorkspaceServerCapabilities,
-};
+use tower_lsp::lsp_types::*;
 
 use super::from_proto;
 use super::library::Pages;
+use super::to_proto::token_legend;
 use crate::text::Columns;
+
+/// The kind of the action that applies all fixes that need no thought; users name it in their editor's settings for saving.
+pub const FIX_ALL: CodeActionKind = CodeActionKind::new("source.fixAll.scruple");
+
+/// Characters after which something is worth proposing: after a word or a comma comes the next part of a line, and a path
+/// is completed folder by folder.
+const TRIGGERS: &[char] = &[' ', ',', '/', '"'];
 
 /// What was agreed with the client when the conversation began.
 #[derive(Clone, Debug)]
@@ -21,16 +25,16 @@ pub struct Session {
     pub folders: Vec<Utf8PathBuf>,
     /// Hovers may be Markdown.
     pub markdown_hover: bool,
-    /// Documentation of completions may be Markdown.
-    pub markdown_completion: bool,
-    /// Completions may hold placeholders.
-    pub snippets: bool,
     /// Symbols may be nested.
     pub nested_symbols: bool,
+    /// The client asks what a renaming would take before it asks the user for the new name.
+    pub prepares_rename: bool,
     /// Definitions may say which characters they were asked about.
     pub definition_links: bool,
     /// Findings may name related places.
     pub related_information: bool,
+    /// The ways in which findings may be drawn.
+    pub finding_tags: Vec<DiagnosticTag>,
     /// Findings may link to the page of their code.
     pub code_description: bool,
     /// Code actions may be sent as such, not only as commands.
@@ -43,6 +47,8 @@ pub struct Session {
     pub refresh_hints: bool,
     /// The client watches files for us when asked to.
     pub watches_files: bool,
+    /// The client can be asked for the user's settings.
+    pub gives_settings: bool,
     /// The pages of the built-in library and of the findings, as this client opens them.
     pub pages: Pages,
 }
@@ -54,22 +60,20 @@ impl Session {
         let text = client.text_document.clone().unwrap_or_default();
         let workspace = client.workspace.clone().unwrap_or_default();
         let hover = text.hover.and_then(|hover| hover.content_format).unwrap_or_default();
-        let completion = text.completion.and_then(|completion| completion.completion_item).unwrap_or_default();
         let findings = text.publish_diagnostics.unwrap_or_default();
         let actions = text.code_action.unwrap_or_default();
-        let is_markdown = |kinds: &[MarkupKind]| kinds.contains(&MarkupKind::Markdown);
         Session {
             columns: columns(client),
             folders: folders(params),
-            markdown_hover: is_markdown(&hover),
-            markdown_completion: is_markdown(&completion.documentation_format.unwrap_or_default()),
-            snippets: completion.snippet_support.unwrap_or_default(),
+            markdown_hover: hover.contains(&MarkupKind::Markdown),
             nested_symbols: text
                 .document_symbol
                 .and_then(|symbols| symbols.hierarchical_document_symbol_support)
                 .unwrap_or_default(),
+            prepares_rename: text.rename.and_then(|rename| rename.prepare_support).unwrap_or_default(),
             definition_links: text.definition.and_then(|definition| definition.link_support).unwrap_or_default(),
             related_information: findings.related_information.unwrap_or_default(),
+            finding_tags: findings.tag_support.map(|tags| tags.value_set).unwrap_or_default(),
             code_description: findings.code_description_support.unwrap_or_default(),
             code_actions: actions.code_action_literal_support.is_some(),
             preferred_actions: actions.is_preferred_support.unwrap_or_default(),
@@ -79,6 +83,7 @@ impl Session {
                 .did_change_watched_files
                 .and_then(|watch| watch.dynamic_registration)
                 .unwrap_or_default(),
+            gives_settings: workspace.configuration.unwrap_or_default(),
             pages: Pages::new(announces_library(client)),
         }
     }
@@ -96,6 +101,39 @@ impl Session {
                 save: Some(TextDocumentSyncSaveOptions::SaveOptions(SaveOptions { include_text: Some(false) })),
                 ..TextDocumentSyncOptions::default()
             })),
+            hover_provider: Some(HoverProviderCapability::Simple(true)),
+            completion_provider: Some(CompletionOptions {
+                trigger_characters: Some(TRIGGERS.iter().map(ToString::to_string).collect()),
+                ..CompletionOptions::default()
+            }),
+            definition_provider: Some(OneOf::Left(true)),
+            references_provider: Some(OneOf::Left(true)),
+            document_highlight_provider: Some(OneOf::Left(true)),
+            document_symbol_provider: Some(OneOf::Left(true)),
+            workspace_symbol_provider: Some(OneOf::Left(true)),
+            document_link_provider: Some(DocumentLinkOptions {
+                resolve_provider: Some(false),
+                work_done_progress_options: WorkDoneProgressOptions::default(),
+            }),
+            folding_range_provider: Some(FoldingRangeProviderCapability::Simple(true)),
+            selection_range_provider: Some(SelectionRangeProviderCapability::Simple(true)),
+            semantic_tokens_provider: Some(SemanticTokensServerCapabilities::SemanticTokensOptions(SemanticTokensOptions {
+                legend: token_legend(),
+                range: Some(true),
+                full: Some(SemanticTokensFullOptions::Bool(true)),
+                work_done_progress_options: WorkDoneProgressOptions::default(),
+            })),
+            inlay_hint_provider: Some(OneOf::Left(true)),
+            code_action_provider: Some(CodeActionProviderCapability::Options(CodeActionOptions {
+                code_action_kinds: Some(vec![CodeActionKind::QUICKFIX, CodeActionKind::REFACTOR_REWRITE, FIX_ALL]),
+                ..CodeActionOptions::default()
+            })),
+            rename_provider: Some(OneOf::Right(RenameOptions {
+                prepare_provider: Some(self.prepares_rename),
+                work_done_progress_options: WorkDoneProgressOptions::default(),
+            })),
+            document_formatting_provider: Some(OneOf::Left(true)),
+            document_range_formatting_provider: Some(OneOf::Left(true)),
             workspace: Some(WorkspaceServerCapabilities {
                 workspace_folders: Some(WorkspaceFoldersServerCapabilities {
                     supported: Some(true),
@@ -187,7 +225,7 @@ mod tests {
     fn a_client_that_announces_nothing_gets_the_plain_protocol() {
         let session = session(json!({ "capabilities": {} }));
         assert_eq!(session.columns, Columns::Utf16);
-        assert!(!session.markdown_hover && !session.snippets && !session.watches_files);
+        assert!(!session.markdown_hover && !session.nested_symbols && !session.watches_files);
         assert_eq!(session.folders.len(), 1, "the current folder");
     }
 
@@ -225,14 +263,14 @@ mod tests {
                 "general": { "positionEncodings": ["utf-8"] },
                 "textDocument": {
                     "hover": { "contentFormat": ["markdown"] },
-                    "completion": { "completionItem": { "snippetSupport": "perhaps" } },
+                    "documentSymbol": { "hierarchicalDocumentSymbolSupport": "perhaps" },
                     "somethingNew": { "deep": [1, 2] },
                 },
                 "window": 7,
                 "experimental": { "scrupleLibrary": true },
             },
         }));
-        assert!(session.markdown_hover && !session.snippets);
+        assert!(session.markdown_hover && !session.nested_symbols);
         assert_eq!(session.pages.uri("x.prep").unwrap().scheme(), "scruple-library");
         assert_eq!(session.columns, Columns::Utf8);
     }

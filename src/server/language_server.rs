@@ -2,19 +2,24 @@
 
 use std::sync::OnceLock;
 
-use serde_json::json;
-use tower_lsp::jsonrpc::{Error, Result};
-use tower_lsp::lsp_types::{
-    DidChangeTextDocumentParams, DidChangeWatchedFilesParams, DidChangeWorkspaceFoldersParams, DidCloseTextDocumentParams,
-    DidOpenTextDocumentParams, DidSaveTextDocumentParams, InitializeParams, InitializeResult, InitializedParams, Registration,
-    ServerInfo,
-};
+use camino::Utf8Path;
+use serde_json::{Value, json};
+use tower_lsp::jsonrpc::{Error, ErrorCode, Result};
+use tower_lsp::lsp_types::*;
 use tower_lsp::{Client, LanguageServer, async_trait};
 
 use super::capabilities::Session;
 use super::library::{LibraryText, LibraryTextParams};
-use super::{library, log};
-use super::world::World;
+use super::settings::{SECTION, Settings};
+use super::view::View;
+use super::world::{Kind, World};
+use super::{library, log, to_proto};
+use crate::editor;
+use crate::text::Span;
+use crate::workspace::FileState;
+
+/// The protocol's code for a request that is understood and cannot be done, with a sentence that says why.
+const REQUEST_FAILED: i64 = -32803;
 
 /// The server behind the protocol's methods. Its state is the world's; what a handler changes it pushes there before it
 /// waits for anything.
@@ -40,8 +45,56 @@ impl Server {
         Ok(LibraryText { text: text.to_owned() })
     }
 
-    fn world(&self) -> Option<&World> {
-        self.world.get()
+    fn world(&self) -> Result<&World> {
+        self.world.get().ok_or_else(Error::internal_error)
+    }
+
+    /// Asks something about a file; nothing is known of a file that is neither open nor part of a library of recipes.
+    async fn ask<T: Default + Send + 'static>(
+        &self,
+        document: &TextDocumentIdentifier,
+        kind: Kind,
+        compute: impl FnOnce(&View, &FileState) -> T + Send + 'static,
+    ) -> Result<T> {
+        let answer = |view: &View, path: &Utf8Path| view.file(path).map(|file| compute(view, file)).unwrap_or_default();
+        self.world()?.ask(&document.uri, kind, answer).await
+    }
+
+    /// Asks something about a position.
+    async fn ask_at<T: Default + Send + 'static>(
+        &self,
+        at: TextDocumentPositionParams,
+        kind: Kind,
+        compute: impl FnOnce(&View, &FileState, usize) -> T + Send + 'static,
+    ) -> Result<T> {
+        let position = at.position;
+        self.ask(&at.text_document, kind, move |view, file| compute(view, file, view.offset(file, position))).await
+    }
+
+    /// Asks the client for the user's settings. The client may take its time; nothing waits for its answer.
+    fn fetch_settings(&self) {
+        let (client, Ok(world)) = (self.client.clone(), self.world().cloned()) else { return };
+        tokio::spawn(async move {
+            let section = ConfigurationItem { scope_uri: None, section: Some(SECTION.to_owned()) };
+            match client.configuration(vec![section]).await {
+                Ok(values) => world.settings(Settings::read(values.first().unwrap_or(&Value::Null))),
+                Err(error) => log::write(format_args!("no settings: {error}")),
+            }
+        });
+    }
+
+    /// Asks the client to tell us when a recipe or a configuration changes on disk.
+    fn watch_files(&self) {
+        let watcher = |pattern: &str| json!({ "globPattern": pattern });
+        let options = json!({ "watchers": [watcher("**/*.prep"), watcher("**/scruple.toml")] });
+        let method = "workspace/didChangeWatchedFiles".to_owned();
+        let registration = Registration { id: "files".to_owned(), method, register_options: Some(options) };
+        let client = self.client.clone();
+        tokio::spawn(async move {
+            if let Err(error) = client.register_capability(vec![registration]).await {
+                log::write(format_args!("files are not watched: {error}"));
+            }
+        });
     }
 }
 
@@ -53,20 +106,19 @@ impl LanguageServer for Server {
         }
         let session = Session::new(&params);
         let capabilities = session.offer();
-        let _ = self.world.set(World::start(session, self.client.clone()));
+        let settings = Settings::read(params.initialization_options.as_ref().unwrap_or(&Value::Null));
+        let _ = self.world.set(World::start(session, settings, self.client.clone()));
         let version = Some(env!("CARGO_PKG_VERSION").to_owned());
         Ok(InitializeResult { capabilities, server_info: Some(ServerInfo { name: "scruple".to_owned(), version }) })
     }
 
     async fn initialized(&self, _: InitializedParams) {
-        if self.world().is_some_and(|world| world.session().watches_files) {
-            let client = self.client.clone();
-            // The client may take its time; nothing waits for its answer.
-            tokio::spawn(async move {
-                if let Err(error) = client.register_capability(vec![watch_files()]).await {
-                    log::write(format_args!("files are not watched: {error}"));
-                }
-            });
+        let Ok(world) = self.world() else { return };
+        if world.session().watches_files {
+            self.watch_files();
+        }
+        if world.session().gives_settings {
+            self.fetch_settings();
         }
     }
 
@@ -75,46 +127,169 @@ impl LanguageServer for Server {
     }
 
     async fn did_open(&self, params: DidOpenTextDocumentParams) {
-        if let Some(world) = self.world() {
+        if let Ok(world) = self.world() {
             world.open(params.text_document);
         }
     }
 
     async fn did_change(&self, params: DidChangeTextDocumentParams) {
-        if let Some(world) = self.world() {
+        if let Ok(world) = self.world() {
             let document = params.text_document;
             world.change(&document.uri, document.version, params.content_changes);
         }
     }
 
     async fn did_save(&self, _: DidSaveTextDocumentParams) {
-        if let Some(world) = self.world() {
+        if let Ok(world) = self.world() {
             world.save();
         }
     }
 
     async fn did_close(&self, params: DidCloseTextDocumentParams) {
-        if let Some(world) = self.world() {
+        if let Ok(world) = self.world() {
             world.close(&params.text_document.uri);
         }
     }
+
     async fn did_change_watched_files(&self, params: DidChangeWatchedFilesParams) {
-        if let Some(world) = self.world() {
+        if let Ok(world) = self.world() {
             world.disk(params.changes.into_iter().map(|change| change.uri));
         }
     }
 
     async fn did_change_workspace_folders(&self, params: DidChangeWorkspaceFoldersParams) {
-        if let Some(world) = self.world() {
+        if let Ok(world) = self.world() {
             world.folders(params.event.added.into_iter().map(|folder| folder.uri));
         }
     }
+
+    async fn did_change_configuration(&self, params: DidChangeConfigurationParams) {
+        match self.world() {
+            // Clients that can be asked send nothing of use here, or only what changed.
+            Ok(world) if world.session().gives_settings => self.fetch_settings(),
+            Ok(world) => world.settings(Settings::read(&params.settings)),
+            Err(_) => (),
+        }
+    }
+
+    async fn hover(&self, params: HoverParams) -> Result<Option<Hover>> {
+        self.ask_at(params.text_document_position_params, Kind::Places, to_proto::hover).await
+    }
+
+    async fn completion(&self, params: CompletionParams) -> Result<Option<CompletionResponse>> {
+        self.ask_at(params.text_document_position, Kind::Typing, to_proto::completions).await
+    }
+
+    async fn goto_definition(&self, params: GotoDefinitionParams) -> Result<Option<GotoDefinitionResponse>> {
+        self.ask_at(params.text_document_position_params, Kind::Places, to_proto::definitions).await
+    }
+
+    async fn references(&self, params: ReferenceParams) -> Result<Option<Vec<Location>>> {
+        let with_definition = params.context.include_declaration;
+        let found = move |view: &View, file: &FileState, offset| to_proto::references(view, file, offset, with_definition);
+        self.ask_at(params.text_document_position, Kind::Places, found).await.map(Some)
+    }
+
+    async fn document_highlight(&self, params: DocumentHighlightParams) -> Result<Option<Vec<DocumentHighlight>>> {
+        self.ask_at(params.text_document_position_params, Kind::Places, to_proto::highlights).await.map(Some)
+    }
+
+    async fn prepare_rename(&self, params: TextDocumentPositionParams) -> Result<Option<PrepareRenameResponse>> {
+        let prepared = |view: &View, file: &FileState, offset| {
+            Some(editor::prepare_rename(&view.snapshot, file.id, offset).map(|rename| {
+                let range = view.range(file, rename.span);
+                PrepareRenameResponse::RangeWithPlaceholder { range, placeholder: rename.name }
+            }))
+        };
+        self.ask_at(params, Kind::Places, prepared).await?.transpose().map_err(|refusal| refused(refusal.0))
+    }
+
+    async fn rename(&self, params: RenameParams) -> Result<Option<WorkspaceEdit>> {
+        let renamed = move |view: &View, file: &FileState, offset| {
+            let edits = editor::rename(&view.snapshot, file.id, offset, &params.new_name);
+            Some(edits.map(|edits| to_proto::workspace_edit(view, edits)))
+        };
+        let edits = self.ask_at(params.text_document_position, Kind::Places, renamed).await?;
+        edits.transpose().map(Option::flatten).map_err(|refusal| refused(refusal.0))
+    }
+
+    async fn document_symbol(&self, params: DocumentSymbolParams) -> Result<Option<DocumentSymbolResponse>> {
+        self.ask(&params.text_document, Kind::Places, to_proto::document_symbols).await
+    }
+
+    async fn symbol(&self, params: WorkspaceSymbolParams) -> Result<Option<Vec<SymbolInformation>>> {
+        self.world()?.ask_all(move |view| Some(to_proto::workspace_symbols(view, &params.query))).await
+    }
+
+    async fn document_link(&self, params: DocumentLinkParams) -> Result<Option<Vec<DocumentLink>>> {
+        self.ask(&params.text_document, Kind::Places, to_proto::links).await.map(Some)
+    }
+
+    async fn folding_range(&self, params: FoldingRangeParams) -> Result<Option<Vec<FoldingRange>>> {
+        self.ask(&params.text_document, Kind::Places, to_proto::folding_ranges).await.map(Some)
+    }
+
+    async fn selection_range(&self, params: SelectionRangeParams) -> Result<Option<Vec<SelectionRange>>> {
+        let positions = params.positions;
+        let grown = move |view: &View, file: &FileState| {
+            let range = |position: &Position| to_proto::selection_range(view, file, view.offset(file, *position));
+            Some(positions.iter().map(range).collect())
+        };
+        self.ask(&params.text_document, Kind::Places, grown).await
+    }
+
+    async fn semantic_tokens_full(&self, params: SemanticTokensParams) -> Result<Option<SemanticTokensResult>> {
+        let all = |view: &View, file: &FileState| to_proto::semantic_tokens(view, file, whole(file));
+        let data = self.ask(&params.text_document, Kind::Places, all).await?;
+        Ok(Some(SemanticTokensResult::Tokens(SemanticTokens { result_id: None, data })))
+    }
+
+    async fn semantic_tokens_range(&self, params: SemanticTokensRangeParams) -> Result<Option<SemanticTokensRangeResult>> {
+        let range = params.range;
+        let some = move |view: &View, file: &FileState| to_proto::semantic_tokens(view, file, view.span(file, range));
+        let data = self.ask(&params.text_document, Kind::Places, some).await?;
+        Ok(Some(SemanticTokensRangeResult::Tokens(SemanticTokens { result_id: None, data })))
+    }
+
+    async fn inlay_hint(&self, params: InlayHintParams) -> Result<Option<Vec<InlayHint>>> {
+        let range = params.range;
+        let hints = move |view: &View, file: &FileState| to_proto::inlay_hints(view, file, view.span(file, range));
+        self.ask(&params.text_document, Kind::Places, hints).await.map(Some)
+    }
+
+    async fn code_action(&self, params: CodeActionParams) -> Result<Option<CodeActionResponse>> {
+        let CodeActionParams { range, context, .. } = params;
+        let actions = move |view: &View, file: &FileState| to_proto::code_actions(view, file, view.span(file, range), &context);
+        self.ask(&params.text_document, Kind::Places, actions).await.map(Some)
+    }
+
+    async fn formatting(&self, params: DocumentFormattingParams) -> Result<Option<Vec<TextEdit>>> {
+        let formatted = |view: &View, file: &FileState| {
+            let edits = editor::formatting(&view.snapshot, file.id)?;
+            Some(to_proto::text_edits(view, file, edits))
+        };
+        self.ask(&params.text_document, Kind::Places, formatted).await
+    }
+
+    async fn range_formatting(&self, params: DocumentRangeFormattingParams) -> Result<Option<Vec<TextEdit>>> {
+        let range = params.range;
+        let formatted = move |view: &View, file: &FileState| {
+            let lines = view.whole_lines(file, range);
+            let mut edits = editor::formatting(&view.snapshot, file.id)?;
+            edits.retain(|(span, _)| lines.start <= span.start && span.end <= lines.end);
+            Some(to_proto::text_edits(view, file, edits))
+        };
+        self.ask(&params.text_document, Kind::Places, formatted).await
+    }
 }
 
-/// Asks the client to tell us when a recipe or a configuration changes on disk.
-fn watch_files() -> Registration {
-    let watcher = |pattern: &str| json!({ "globPattern": pattern });
-    let options = json!({ "watchers": [watcher("**/*.prep"), watcher("**/scruple.toml")] });
-    let method = "workspace/didChangeWatchedFiles".to_owned();
-    Registration { id: "files".to_owned(), method, register_options: Some(options) }
+fn whole(file: &FileState) -> Span {
+    Span::new(0, file.source.len())
 }
+
+fn refused(message: String) -> Error {
+    Error { code: ErrorCode::ServerError(REQUEST_FAILED), message: message.into(), data: None }
+}
+
+#[cfg(test)]
+mod tests;

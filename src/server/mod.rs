@@ -15,6 +15,7 @@ mod log;
 mod owner;
 mod publish;
 mod serve;
+mod settings;
 mod to_proto;
 mod view;
 mod watchdog;

@@ -6,17 +6,20 @@
 
 use std::collections::BTreeSet;
 use std::sync::Arc;
+use std::sync::atomic::{AtomicBool, Ordering};
 use std::sync::mpsc::Receiver;
 use std::thread;
 
 use camino::{Utf8Path, Utf8PathBuf};
 use rayon::{ThreadPool, ThreadPoolBuilder};
+use tokio::runtime::Handle;
 use tower_lsp::Client;
 
 use super::capabilities::Session;
 use super::documents::{Document, Documents, Revisions};
 use super::guard::{Fault, guarded};
 use super::publish::Published;
+use super::settings::Settings;
 use super::view::View;
 use super::world::{Event, Kind, Question, Refusal, STACK};
 use super::{library, log, to_proto};
@@ -36,13 +39,25 @@ pub struct Owner {
     roots: BTreeSet<Utf8PathBuf>,
     /// What is known of the newest state, or why nothing is.
     snapshot: Result<Arc<Snapshot>, Fault>,
+    settings: Arc<Settings>,
+    client: Client,
     published: Published,
+    /// Whether the client has been asked to ask for inlay hints again and has not answered yet.
+    refreshing: Arc<AtomicBool>,
+    /// Where what waits for the client runs.
+    runtime: Handle,
     pool: Option<ThreadPool>,
 }
 
 impl Owner {
     /// An owner of nothing yet.
-    pub fn new(arriving: Receiver<Event>, revisions: Revisions, session: Arc<Session>, client: Client) -> Owner {
+    pub fn new(
+        arriving: Receiver<Event>,
+        revisions: Revisions,
+        session: Arc<Session>,
+        settings: Settings,
+        client: Client,
+    ) -> Owner {
         Owner {
             arriving,
             revisions,
@@ -52,7 +67,11 @@ impl Owner {
             folders: BTreeSet::new(),
             roots: BTreeSet::new(),
             snapshot: Ok(Arc::default()),
-            published: Published::new(client),
+            settings: Arc::new(settings),
+            published: Published::new(client.clone()),
+            client,
+            refreshing: Arc::default(),
+            runtime: Handle::current(),
             pool: pool(),
         }
     }
@@ -62,10 +81,7 @@ impl Owner {
         while let Ok(first) = self.arriving.recv() {
             let (changed, questions) = self.take_all(first);
             if changed {
-                self.snapshot = guarded(|| self.workspace.snapshot());
-                if let Err(fault) = &self.snapshot {
-                    log::write(format_args!("no snapshot: {fault}"));
-                }
+                self.renew();
             }
             if let Err(fault) = guarded(|| self.answer(questions)) {
                 log::write(format_args!("questions were dropped: {fault}"));
@@ -73,6 +89,33 @@ impl Owner {
             if changed && let Err(fault) = guarded(|| self.publish()) {
                 log::write(format_args!("findings were not published: {fault}"));
             }
+        }
+    }
+
+    /// Makes the snapshot of the present state.
+    fn renew(&mut self) {
+        let before = std::mem::replace(&mut self.snapshot, guarded(|| self.workspace.snapshot()));
+        match (&before, &self.snapshot) {
+            (Ok(before), Ok(now)) if self.session.refresh_hints => {
+                let moved = self.documents.iter().any(|(path, _)| is_moved_from_outside(before, now, path));
+                if moved {
+                    self.refresh_hints();
+                }
+            }
+            (_, Err(fault)) => log::write(format_args!("no snapshot: {fault}")),
+            _ => (),
+        }
+    }
+
+    /// Asks the client to ask for inlay hints again; once, until it has answered.
+    fn refresh_hints(&self) {
+        if self.session.refresh_hints && !self.refreshing.swap(true, Ordering::SeqCst) {
+            let (client, refreshing) = (self.client.clone(), Arc::clone(&self.refreshing));
+            self.runtime.spawn(async move {
+                // An answer of any kind will do.
+                let _ = client.inlay_hint_refresh().await;
+                refreshing.store(false, Ordering::SeqCst);
+            });
         }
     }
 
@@ -150,6 +193,12 @@ impl Owner {
                     self.workspace.open_root(&root, &root);
                 }
             }
+            Event::Settings(settings) => {
+                if *self.settings != settings {
+                    self.settings = Arc::new(settings);
+                    self.refresh_hints();
+                }
+            }
             Event::Question(_) => (),
         }
     }
@@ -215,7 +264,12 @@ impl Owner {
     }
 
     fn view(&self, snapshot: Arc<Snapshot>) -> View {
-        View { session: Arc::clone(&self.session), documents: Arc::clone(&self.documents), snapshot }
+        View {
+            session: Arc::clone(&self.session),
+            documents: Arc::clone(&self.documents),
+            settings: Arc::clone(&self.settings),
+            snapshot,
+        }
     }
 
     /// Publishes what is known of each open text, unless a newer change of it is waiting: that one will be published.
@@ -234,6 +288,17 @@ impl Owner {
             }
         }
     }
+}
+
+/// Whether the values of a file came out otherwise although its own text is the same: the client asks again after its own
+/// changes, not after those elsewhere.
+fn is_moved_from_outside(before: &Snapshot, now: &Snapshot, path: &Utf8Path) -> bool {
+    let (Some(old), Some(new)) = (before.file_by_path(path), now.file_by_path(path)) else { return false };
+    let is_other = |block: usize| match (before.checked(old.id, block), now.checked(new.id, block)) {
+        (Some(old), Some(new)) => !Arc::ptr_eq(&old.evaluation, &new.evaluation),
+        (old, new) => old.is_some() != new.is_some(),
+    };
+    Arc::ptr_eq(&old.source, &new.source) && (0..new.model.blocks.len()).any(is_other)
 }
 
 /// Threads for answers: enough that a slow one holds up no quick one, few enough to leave the machine to the editor.

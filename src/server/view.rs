@@ -7,6 +7,7 @@ use tower_lsp::lsp_types::{Location, Position, Range, Url};
 
 use super::capabilities::Session;
 use super::documents::Documents;
+use super::settings::Settings;
 use super::{from_proto, library, to_proto};
 use crate::text::{FileId, Span};
 use crate::workspace::{FileState, Origin, Snapshot};
@@ -18,6 +19,8 @@ pub struct View {
     pub session: Arc<Session>,
     /// The texts that are open; for their addresses and versions. Text is taken from the snapshot only.
     pub documents: Arc<Documents>,
+    /// What the user sets in the editor.
+    pub settings: Arc<Settings>,
     /// Everything else.
     pub snapshot: Arc<Snapshot>,
 }
@@ -39,6 +42,16 @@ impl View {
     /// The span of a range.
     pub fn span(&self, file: &FileState, range: Range) -> Span {
         from_proto::span(&file.source, range, self.session.columns)
+    }
+
+    /// The span of the lines that a range touches. A range that ends at a line's beginning does not touch that line.
+    pub fn whole_lines(&self, file: &FileState, range: Range) -> Span {
+        let span = self.span(file, range);
+        let first = file.source.line_of(span.start);
+        let last = file.source.line_of(span.end);
+        let last_start = file.source.line_span(last).start;
+        let end = if last > first && span.end == last_start { last_start } else { file.source.line_span(last).end };
+        Span::new(file.source.line_span(first).start, end)
     }
 
     /// The position of an offset.

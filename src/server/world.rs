@@ -15,6 +15,7 @@ use super::capabilities::Session;
 use super::documents::Revisions;
 use super::guard::{Fault, guarded};
 use super::owner::Owner;
+use super::settings::Settings;
 use super::view::View;
 use super::{from_proto, log};
 
@@ -36,6 +37,8 @@ pub enum Event {
     Folders(Vec<Utf8PathBuf>),
     /// Saw files change on disk.
     Disk(Vec<Utf8PathBuf>),
+    /// Was told the user's settings.
+    Settings(Settings),
     /// Asked something.
     Question(Question),
 }
@@ -80,10 +83,10 @@ pub struct World {
 
 impl World {
     /// Starts the owner thread.
-    pub fn start(session: Session, client: Client) -> World {
+    pub fn start(session: Session, settings: Settings, client: Client) -> World {
         let (events, arriving) = channel();
         let world = World { events, revisions: Revisions::default(), session: Arc::new(session) };
-        let owner = Owner::new(arriving, world.revisions.clone(), Arc::clone(&world.session), client);
+        let owner = Owner::new(arriving, world.revisions.clone(), Arc::clone(&world.session), settings, client);
         if let Err(error) = thread::Builder::new().name("world".into()).stack_size(STACK).spawn(move || owner.run()) {
             log::write(format_args!("no thread for the world: {error}"));
         }
@@ -132,6 +135,22 @@ impl World {
         self.push(Event::Disk(files.filter_map(|uri| from_proto::file_path(&uri)).collect()));
     }
 
+    /// The user's settings have changed.
+    pub fn settings(&self, settings: Settings) {
+        self.push(Event::Settings(settings));
+    }
+
+    /// Asks something that is about no single text.
+    ///
+    /// # Errors
+    /// An internal error where answering failed.
+    pub fn ask_all<T: Send + 'static>(
+        &self,
+        compute: impl FnOnce(&View) -> T + Send + 'static,
+    ) -> impl Future<Output = Result<T>> + Send + 'static {
+        self.ask_path(Utf8PathBuf::new(), Kind::Typing, |view, _| compute(view))
+    }
+
     /// Asks something about a text. The question is in its place among the changes when this returns; only the answer is
     /// waited for.
     ///
@@ -143,7 +162,15 @@ impl World {
         kind: Kind,
         compute: impl FnOnce(&View, &Utf8Path) -> T + Send + 'static,
     ) -> impl Future<Output = Result<T>> + Send + 'static {
-        let path = self.path(uri);
+        self.ask_path(self.path(uri), kind, compute)
+    }
+
+    fn ask_path<T: Send + 'static>(
+        &self,
+        path: Utf8PathBuf,
+        kind: Kind,
+        compute: impl FnOnce(&View, &Utf8Path) -> T + Send + 'static,
+    ) -> impl Future<Output = Result<T>> + Send + 'static {
         let revision = self.revisions.latest(&path);
         let (reply, answer) = tokio::sync::oneshot::channel();
         let asked = path.clone();
