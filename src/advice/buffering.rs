@@ -1,9 +1,10 @@
 //! Whether something holds the pH where a recipe sets or expects it.
 
 use super::Case;
+use crate::chemistry::ComponentId;
 use crate::evaluate::Outcome;
 use crate::finding::{Anchor, Code, Finding};
-use crate::model::{Action, GoalKind, Property, Recipe};
+use crate::model::{Action, GoalKind, NameKey, Property, Recipe};
 use crate::units::format;
 
 /// Below this share of the most that the buffering substances could give at their best pH, the pH is weakly held.
@@ -70,6 +71,7 @@ pub(super) fn buffering_total(case: &Case, outcome: &Outcome) -> f64 {
         .mixture
         .amounts_mol
         .iter()
+        .filter(|(component, _)| !is_chelator(case, **component))
         .filter(|(component, _)| {
             let mut steps: Vec<(i32, f64)> = chemistry
                 .all_species()
@@ -88,4 +90,22 @@ pub(super) fn buffering_total(case: &Case, outcome: &Outcome) -> f64 {
         })
         .map(|(_, amount)| amount / outcome.volume_L)
         .sum()
+}
+
+/// A complex with calcium at least this strong makes a chelator, whose stocks are set to a pH to dissolve, not to buffer.
+const CHELATOR_LOG_K: f64 = 7.2;
+
+/// Whether a component binds calcium as chelators do.
+fn is_chelator(case: &Case, component: ComponentId) -> bool {
+    let constituents = case.context.constituents;
+    let Some(calcium) = constituents.named(&NameKey::new("calcium")).and_then(|calcium| calcium.component) else { return false };
+    let chemistry = &constituents.chemistry;
+    chemistry.all_species().any(|(_, species)| {
+        let has = |wanted: ComponentId| species.parts.iter().any(|(part, _)| *part == wanted);
+        let log_k = || {
+            let constants = species.log_beta.iter();
+            constants.map(|(factor, id)| factor * chemistry.constant(*id).map_or(0.0, |constant| constant.log10_k(298.15))).sum::<f64>()
+        };
+        species.hydrogen == 0 && has(component) && has(calcium) && component != calcium && log_k() >= CHELATOR_LOG_K
+    })
 }
