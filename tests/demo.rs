@@ -28,9 +28,9 @@ fn the_demo_library_is_clean_and_complete() {
         let name = block.name.as_ref().map(|name| name.text.clone()).unwrap_or_default();
         let outcome = snapshot.checked(file.id, index).and_then(|checked| checked.evaluation.outcome().cloned());
         let outcome = outcome.unwrap_or_else(|| panic!("{name} has no values"));
-        let pH = outcome.finished.as_ref().map(|state| state.pH());
-        println!("{name:32} pH {pH:.3?}, {:.4} L", outcome.volume_L);
-        assert!(pH.is_ok_and(|pH| (0.0..14.5).contains(&pH)), "{name}");
+        let ph = outcome.finished.as_ref().map(|state| state.pH());
+        println!("{name:32} pH {ph:.3?}, {:.4} L", outcome.volume_L);
+        assert!(ph.is_ok_and(|ph| (0.0..14.5).contains(&ph)), "{name}");
         assert!(outcome.verdicts.iter().all(|verdict| verdict.holds == Some(true)), "{name}: {:?}", outcome.verdicts);
     }
     assert!((18..=25).contains(&solutions), "{solutions} solutions");

@@ -4,8 +4,9 @@ use super::bench::diluted;
 use super::goods::state_of;
 use super::property::{PropertyValue, property_value};
 use super::{Context, Outcome, Refusal, Verdict};
-use crate::finding::Finding;
+use crate::finding::{Code, Finding};
 use crate::model::{Expectation, Recipe};
+use crate::units::format;
 
 /// Limits are compared with the rounding of a double in mind.
 const SLACK: f64 = 1e-9;
@@ -66,7 +67,7 @@ pub(super) fn verdicts(
     Ok(outcome)
 }
 
-/// The value of what is expected; nothing where the chemistry gave no state.
+/// The value of what is expected, or why there is none.
 fn value_of(
     expectation: &Expectation,
     outcome: &Outcome,
@@ -78,7 +79,12 @@ fn value_of(
         Some(dilution) => diluted(&outcome.mixture, dilution.fold, dilution.with.as_ref(), outcome.made_at_K, context)
             .map_err(Refusal::into_findings)?,
     };
-    let Ok(state) = state_of(&mixture, temperature_K, context) else { return Ok(None) };
+    // An expectation that is not judged must not look like one that holds.
+    let state = state_of(&mixture, temperature_K, context).map_err(|failure| {
+        let message = format!("This is not judged at {}: {failure}.", format::temperature(temperature_K));
+        let finding = Finding::new(Code::ExpectationWithoutValue, expectation.at, message);
+        vec![finding.help("Expect it where the solution can be worked out.")]
+    })?;
     let formula = expectation.as_formula.as_ref().map(|(_, formula)| formula);
     property_value(&state, &expectation.property, expectation.unit, formula, context).map(Some).map_err(|why| match why {
         PropertyValue::Unknown(refusal) => refusal.into_findings(),

@@ -54,7 +54,7 @@ class MolarMasses(unittest.TestCase):
             printed = json.loads(subprocess.run(command, capture_output=True, text=True, check=False).stdout)
         weights = uncertainties()
         shown = {}
-        for solution in printed["solutions"]:
+        for solution in printed:
             for ingredient in solution["ingredients"]:
                 shown[ingredient["name"]] = ingredient["mass_g"]
         for name, formula in substances.items():

@@ -34,9 +34,10 @@ def shown():
     """What the program says of each solution: pH by temperature."""
     command = [PROGRAM, "show", str(HERE / "systems.prep"), "--format", "json"]
     printed = json.loads(subprocess.run(command, capture_output=True, text=True, check=False).stdout)
+    # A solution tells its state where it is made and, under `at`, where it is used.
     return {
-        solution["name"]: {state["temperature_C"]: state["pH"] for state in solution["at"]}
-        for solution in printed["solutions"]
+        solution["name"]: {state["temperature_C"]: state["pH"] for state in [solution, *solution["at"]]}
+        for solution in printed
     }
 
 
