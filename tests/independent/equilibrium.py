@@ -56,8 +56,8 @@ class System:
         slope = water.debye_hueckel_slope(self.kelvin) * LN10
         root = math.sqrt(strength)
         ln_gamma = -self.charge**2 * slope * root / (1 + 1.5 * root) + LN10 * self.epsilon @ molality
-        # 2 ∫ I D′(I) dI with D = a√I/(1 + 1.5√I), in x = √I.
-        electric = integrate.quad(lambda x: slope * x**2 / (1 + 1.5 * x) ** 2, 0, root, epsabs=1e-15)[0]
+        # 2 ∫ I dD with D = a√I/(1 + 1.5√I), in x = √I.
+        electric = 2 * integrate.quad(lambda x: slope * x**2 / (1 + 1.5 * x) ** 2, 0, root, epsabs=1e-15)[0]
         pairs = 0.5 * LN10 * float(molality @ self.epsilon @ molality)
         ln_water = -water.MOLAR_MASS * (float(molality.sum()) - electric + pairs)
         return ln_gamma, ln_water, strength

@@ -53,6 +53,7 @@ class Species:
 @dataclass
 class Library:
     charges: dict = field(default_factory=dict)  # ion -> charge number
+    formulas: dict = field(default_factory=dict)  # ion -> formula without charge
     species: list = field(default_factory=list)
     interactions: dict = field(default_factory=dict)  # frozenset of two species -> epsilon, kg/mol
     substances: dict = field(default_factory=dict)  # any name, folded -> (name, formula, gives)
@@ -118,6 +119,8 @@ def read_ion(name, statements, library):
         fields = [part.strip() for part in re.split(r",\s+", rest.strip())]
         if word == "charge":
             library.charges[name] = int(number(rest.strip()))
+        elif word == "formula":
+            library.formulas[name] = rest.strip()
         elif word == "pKa":
             acid = next((f[3:] for f in fields if f.startswith("of ")), None)
             acids.append((acid, fields))

@@ -1,6 +1,7 @@
 """The program's pH against SciPy's, from the same constants, to 1e-6.
 
-What differs is everything else: the reader of the library, the equations' form, the solver, the osmotic integral.
+What differs is everything else: the reader of the library, the equations' form, the solver, the osmotic integral. Molalities are
+per kilogram of all water, that of crystals included.
 """
 
 import json
@@ -11,7 +12,9 @@ import unittest
 from pathlib import Path
 
 import equilibrium
+import formula as formulas
 import library
+import water
 
 HERE = Path(__file__).parent
 PROGRAM = os.environ.get("SCRUPLE", "scruple")
@@ -41,18 +44,33 @@ def shown():
     }
 
 
+def mixture(constants, molalities):
+    """Ions and hydrogen ions for each kilogram of water that there is once everything is dissolved."""
+    crystal = brought = 0.0
+    totals, hydrogen = {}, 0.0
+    for molality, substance in molalities:
+        _, formula, gives = constants.substances[substance.casefold()]
+        # What the formula has more of oxygen than its ions is water.
+        water_count = formulas.elements(formula).get("O", 0.0)
+        for count, ion in gives:
+            if ion in ("hydrogen", "hydroxide"):
+                hydrogen += count * molality * (1 if ion == "hydrogen" else -1)
+                continue
+            totals[ion] = totals.get(ion, 0.0) + count * molality
+            water_count -= count * formulas.elements(constants.formulas[ion]).get("O", 0.0)
+        crystal += molality * max(0.0, water_count - sum(c for c, ion in gives if ion == "hydroxide"))
+        brought += molality * water_count
+    # The molalities count the crystals' water; a hydroxide brings its water only when it meets a hydrogen ion.
+    all_water = 1.0 + water.MOLAR_MASS * (brought - crystal)
+    return {ion: amount / all_water for ion, amount in totals.items()}, hydrogen / all_water
+
+
 class Systems(unittest.TestCase):
     def test_every_system_agrees(self):
         constants, program = library.load(), shown()
         names = set()
         for name, temperatures, molalities in recipes():
-            totals, hydrogen = {}, 0.0
-            for molality, substance in molalities:
-                for count, ion in constants.substances[substance.casefold()][2]:
-                    if ion in ("hydrogen", "hydroxide"):
-                        hydrogen += count * molality * (1 if ion == "hydrogen" else -1)
-                    else:
-                        totals[ion] = totals.get(ion, 0.0) + count * molality
+            totals, hydrogen = mixture(constants, molalities)
             for celsius in temperatures:
                 with self.subTest(solution=name, celsius=celsius):
                     expected, _ = equilibrium.System(constants, totals, hydrogen, celsius + 273.15).solve()
