@@ -21,7 +21,8 @@ const TRIGGERS: &[char] = &[' ', ',', '/', '"'];
 pub struct Session {
     /// What a column counts.
     pub columns: Columns,
-    /// The folders that the client has open; where it names none, the current folder.
+    /// The folders that the client has open. Where it names none there is none: the folder that an editor was started in says
+    /// nothing about what the user works on.
     pub folders: Vec<Utf8PathBuf>,
     /// Hovers may be Markdown.
     pub markdown_hover: bool,
@@ -165,9 +166,6 @@ fn folders(params: &InitializeParams) -> Vec<Utf8PathBuf> {
     if folders.is_empty() {
         folders.extend(params.root_path.as_ref().map(Utf8PathBuf::from));
     }
-    if folders.is_empty() {
-        folders.extend(std::env::current_dir().ok().and_then(|folder| Utf8PathBuf::from_path_buf(folder).ok()));
-    }
     folders
 }
 
@@ -226,7 +224,7 @@ mod tests {
         let session = session(json!({ "capabilities": {} }));
         assert_eq!(session.columns, Columns::Utf16);
         assert!(!session.markdown_hover && !session.nested_symbols && !session.watches_files);
-        assert_eq!(session.folders.len(), 1, "the current folder");
+        assert!(session.folders.is_empty());
     }
 
     #[test]

@@ -19,7 +19,7 @@ pub fn span(text: &SourceText, range: Range, columns: Columns) -> Span {
 
 /// The path that an address stands for. Different spellings of one file (`file:///c%3A/…`, `file:///C:/…`) give one path.
 /// A text that is no file yet (`untitled:Untitled-1`) gets its address as file name in `folder`, so that what it uses is
-/// found from there.
+/// found from there; the top of the disk where there is no folder.
 pub fn path(uri: &Url, folder: &Utf8Path) -> Utf8PathBuf {
     match file_path(uri) {
         Some(path) => path,
