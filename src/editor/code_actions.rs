@@ -166,3 +166,56 @@ fn only_amount(addition: &Addition) -> Option<Span> {
         _ => None,
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::editor::fixture::{applied, fixture};
+
+    /// The titles of what is offered at the cursor, each with the line that the cursor's line becomes.
+    fn check(text: &str) -> Vec<(String, String)> {
+        let fixture = fixture(text);
+        let line = fixture.text[..fixture.offset].matches('\n').count();
+        let actions = code_actions(&fixture.snapshot, fixture.file, Span::empty(fixture.offset));
+        let after = |action: &CodeAction| applied(&fixture.text, action.edits.iter().map(|edit| (edit.span, edit.text.clone())));
+        actions.iter().map(|action| (action.title.clone(), after(action).lines().nth(line).unwrap_or_default().to_owned())).collect()
+    }
+
+    #[test]
+    fn a_misspelled_name_is_mended() {
+        let offered = check("solution A\n    1 g        sodium chlo‸rid\n    q.s.       water to 1 L\n");
+        assert_eq!(offered.first(), Some(&("Write sodium chloride".to_owned(), "    1 g        sodium chloride".to_owned())), "{offered:?}");
+    }
+
+    #[test]
+    fn a_line_can_be_stated_in_the_other_way() {
+        let offered = check("solution A\n    made at    25 °C\n    50 mmol/L  Tr‸is\n    q.s.       water to 1 L\n");
+        assert!(offered.contains(&("State what is measured out: 6.057 g".to_owned(), "    6.057 g  Tris".to_owned())), "{offered:?}");
+        let offered = check("solution A\n    made at    25 °C\n    5.844 g    sodium chlo‸ride\n    q.s.       water to 1 L\n");
+        assert!(offered.iter().any(|(_, line)| line == "    100.0 mmol/L    sodium chloride"), "{offered:?}");
+    }
+
+    #[test]
+    fn what_a_titrant_took_can_be_written_down() {
+        let offered = check("solution A\n    made at    25 °C\n    900 mL     water\n    50 mmol/L  Tris\n    q.s.       1 mol/L hydrochloric a‸cid to pH 8.10 # slowly\n    q.s.       water to 1 L\n");
+        assert!(offered.iter().any(|(title, line)| title.starts_with("Write `about 2") && line.contains("to pH 8.10, about 2") && line.ends_with(" mL # slowly")), "{offered:?}");
+    }
+
+    #[test]
+    fn a_warning_can_be_accepted_and_an_error_cannot() {
+        let fixture = fixture("solution A\n    1 g        water of nowhere\n    q.s.       water to 1 L\n");
+        let all = code_actions(&fixture.snapshot, fixture.file, Span::new(0, fixture.text.len()));
+        for action in &all {
+            let level = action.finding.map(|(index, _)| fixture.snapshot.findings(fixture.file)[index].finding.level);
+            assert!(!(action.title.starts_with("Accept") && level == Some(Level::Error)), "{action:?}");
+        }
+    }
+
+    #[test]
+    fn plain_fixes_are_done_together() {
+        let fixture = fixture("Solution A\n    Q.S.       water to 1 L\n    Made at    25 °C\n");
+        let edits = fix_all(&fixture.snapshot, fixture.file);
+        let text = applied(&fixture.text, edits.into_iter().map(|edit| (edit.span, edit.text)));
+        assert_eq!(text, "solution A\n    q.s.       water to 1 L\n    made at    25 °C\n");
+    }
+}

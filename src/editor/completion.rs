@@ -6,7 +6,7 @@ mod parts;
 
 use super::cursor::Cursor;
 use super::names::names;
-use crate::syntax::tree::{Content, Expected, Statement, Token, TokenKind};
+use crate::syntax::tree::{Amounts, Content, Expected, Statement, Token, TokenKind};
 use crate::text::{FileId, Span};
 use crate::workspace::Snapshot;
 use items::Items;
@@ -97,6 +97,9 @@ fn at_cursor(cursor: &Cursor, items: &mut Items) {
         }
     }
     let Some(statement) = cursor.statement() else { return };
+    if let Some(span) = begun_with_a_number(cursor, statement) {
+        names::begun_with_a_number(items, cursor, cursor.absolute(span));
+    }
     if let Some(name) = name_before(cursor, statement) {
         let span = cursor.absolute(Span::new(name.start, name.end.max(cursor.at)));
         names::at(items, cursor, statement, span);
@@ -145,6 +148,23 @@ fn name_before(cursor: &Cursor, statement: &Statement) -> Option<Span> {
     names(statement, cursor.block.kind()).into_iter().map(|name| name.name.span).find(|span| {
         span.start <= cursor.at && (cursor.at <= span.end || blank(Span::new(span.end, cursor.at)))
     })
+}
+
+/// What stands between the quantity of the line and the cursor, where it begins with a digit: perhaps the name of a thing
+/// that needs quotes.
+fn begun_with_a_number(cursor: &Cursor, statement: &Statement) -> Option<Span> {
+    let begin = match statement {
+        Statement::Ingredient(line) | Statement::Or(line) => match line.amounts.given()? {
+            Amounts::One(quantity) | Amounts::Range(_, quantity) => quantity.span.end,
+            Amounts::Series(quantities) => quantities.last()?.span.end,
+        },
+        Statement::QuantumSatis(_) => cursor.line.tokens.first()?.span.end,
+        _ => return None,
+    };
+    let between = cursor.line.text.get(begin..cursor.at)?;
+    let typed = between.trim_start();
+    let start = cursor.at - typed.len();
+    (typed.starts_with(|letter: char| letter.is_ascii_digit()) && !typed.contains([',', '"'])).then_some(Span::new(start, cursor.at))
 }
 
 /// The gaps at the cursor or before it with blanks between, with what belongs there.
@@ -221,5 +241,127 @@ fn part(items: &mut Items, cursor: &Cursor, statement: &Statement, expected: Exp
         Expected::Code => parts::codes(items, cursor, span),
         Expected::Because => parts::word(items, "because", span),
         Expected::Gas => parts::gases(items, span),
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::editor::fixture::{applied, fixture};
+
+    const STOCKS: &str = "//- stocks.prep\nsolution Salt stock\n    made at    25 °C\n    58.44 g    sodium chloride\n    q.s.       water to 1 L\n\nsolution \"10x salt\"\n    made at    25 °C\n    58.44 g    sodium chloride\n    q.s.       water to 1 L\nlab North bench\n    room       18 °C to 22 °C\n";
+
+    /// The labels offered at the cursor, in order.
+    fn labels(text: &str) -> Vec<String> {
+        let fixture = fixture(&format!("{text}\n{STOCKS}"));
+        completion(&fixture.snapshot, fixture.file, fixture.offset).items.into_iter().map(|item| item.label).collect()
+    }
+
+    /// The line of the cursor once the item of this label is inserted.
+    fn inserted(text: &str, label: &str) -> String {
+        let fixture = fixture(&format!("{text}\n{STOCKS}"));
+        let line = fixture.text[..fixture.offset].matches('\n').count();
+        let items = completion(&fixture.snapshot, fixture.file, fixture.offset).items;
+        match items.iter().find(|item| item.label == label) {
+            Some(item) => applied(&fixture.text, [(item.span, item.insert.clone())]).lines().nth(line).unwrap_or_default().to_owned(),
+            None => panic!("no {label} among {:?}", items.iter().map(|item| &item.label).collect::<Vec<_>>()),
+        }
+    }
+
+    fn begins(text: &str, expected: &[&str]) {
+        let labels = labels(text);
+        assert_eq!(labels.iter().take(expected.len()).collect::<Vec<_>>(), expected, "{text}");
+    }
+
+    #[test]
+    fn a_line_begins_with_a_word_of_its_block() {
+        begins("solution A\n    ‸", &["q.s.", "about", "all"]);
+        begins("solution A\n    exp‸", &["expect"]);
+        begins("substance A\n    for‸", &["formula", "form"]);
+        begins("‸", &["solution", "bottle", "substance", "ion", "solid", "lab", "use"]);
+        begins("sol‸", &["solution", "solid"]);
+        assert!(!labels("solution A\n    ‸").contains(&"pKa".to_owned()));
+        assert_eq!(inserted("solution A\n    mad‸", "made at"), "    made at    ");
+        assert_eq!(inserted("solution A\n    us‸", "used at"), "    used at    ");
+    }
+
+    #[test]
+    fn names_follow_a_quantity() {
+        begins("use \"stocks.prep\"\nsolution A\n    10 mL      Sal‸", &["Salt stock"]);
+        begins("use \"stocks.prep\"\nsolution A\n    10 mL      ‸", &["10x salt", "Salt stock"]);
+        assert_eq!(inserted("use \"stocks.prep\"\nsolution A\n    10 mL      10x‸", "10x salt"), "    10 mL      \"10x salt\"");
+        assert!(labels("solution A\n    1 g        sodium chl‸").contains(&"sodium chloride".to_owned()));
+        
+        assert_eq!(inserted("solution A\n    1 g        potassium chl‸oride, purity 99 %", "potassium chloride"), "    1 g        potassium chloride, purity 99 %");
+        // Found by its formula, written by its name.
+        assert_eq!(inserted("solution A\n    1 g        NaCl‸", "sodium chloride"), "    1 g        sodium chloride");
+    }
+
+    #[test]
+    fn a_substance_is_described() {
+        let fixture = fixture("solution A\n    1 g        sodium hydroxide‸\n");
+        let items = completion(&fixture.snapshot, fixture.file, fixture.offset).items;
+        let item = items.iter().find(|item| item.label == "sodium hydroxide").unwrap();
+        assert_eq!(item.detail, "NaOH, 40.00 g/mol");
+        assert!(item.documentation.contains("GHS") && item.documentation.contains("H314"), "{}", item.documentation);
+    }
+
+    #[test]
+    fn units_follow_a_number() {
+        let all = labels("solution A\n    50 ‸");
+        assert!(["g", "mg", "mL", "mmol/L"].iter().all(|unit| all.contains(&unit.to_string())), "{all:?}");
+        begins("solution A\n    50 mm‸", &["mmol/L", "mmol"].as_slice().get(..0).unwrap());
+        assert!(labels("solution A\n    50 mm‸").contains(&"mmol/L".to_owned()));
+        begins("solution A\n    made at    25 ‸", &["°C", "K"]);
+        assert_eq!(inserted("solution A\n    50 mmo‸  Tris", "mmol/L"), "    50 mmol/L  Tris");
+    }
+
+    #[test]
+    fn a_make_up_is_led_through() {
+        begins("solution A\n    q.s.       water ‸", &["to", "or"]);
+        assert!(labels("solution A\n    q.s.       water to ‸").starts_with(&["pH".to_owned(), "ionic strength".to_owned()]));
+        assert!(labels("solution A\n    q.s.       water to ‸").contains(&"1 L".to_owned()));
+        begins("solution A\n    q.s.       water to 1 ‸", &["L", "mL"].as_slice().get(..1).unwrap());
+    }
+
+    #[test]
+    fn expectations_name_properties_and_constituents() {
+        begins("solution A\n    expect     ‸", &["pH", "ionic strength", "buffer capacity"]);
+        begins("solution A\n    expect     buf‸", &["buffer capacity"]);
+        begins("solution A\n    made at    25 °C\n    1 g        sodium acetate\n    q.s.       water to 1 L\n    expect     total ‸", &["acetate", "sodium"].as_slice().get(..1).unwrap());
+        assert!(labels("solution A\n    q.s.       water to 1 L\n    expect     pH ‸").contains(&"at least".to_owned()));
+    }
+
+    #[test]
+    fn qualifiers_follow_a_comma() {
+        let all = labels("solution A\n    1 g        sodium chloride, ‸");
+        assert!(["purity", "from", "±"].iter().all(|word| all.contains(&word.to_string())), "{all:?}");
+        begins("solution A\n    1 g        sodium chloride, pur‸", &["purity"]);
+        begins("use \"stocks.prep\"\nsolution A\n    1 mmol/L   sodium chloride, from ‸", &["10x salt", "Salt stock"]);
+    }
+
+    #[test]
+    fn paths_labs_and_codes_are_offered() {
+        begins("use ‸", &["stocks.prep"]);
+        assert_eq!(inserted("use \"sto‸\"", "stocks.prep"), "use \"stocks.prep\"");
+        begins("use \"stocks.prep\"\nsolution A\n    in         ‸", &["North bench"]);
+        begins("use \"stocks.prep\"\nsolution A\n    like       ‸", &["10x salt", "Salt stock"]);
+        assert!(labels("solution A\n    accept     ‸").contains(&"temperature-shift".to_owned()));
+        assert_eq!(inserted("solution A\n    accept     temp‸", "temperature-shift"), "    accept     temperature-shift ");
+        begins("solution A\n    accept     temperature-shift ‸", &["because"]);
+    }
+
+    #[test]
+    fn every_half_written_line_has_an_answer() {
+        let line = "q.s. 1 mol/L hydrochloric acid or \"x y\" to pH 7.0 ± 0.1 at 4 °C, about 3 mL # so";
+        for end in (0..=line.len()).filter(|end| line.is_char_boundary(*end)).step_by(3) {
+            labels(&format!("solution A\n    {}‸", &line[..end]));
+        }
+    }
+
+    #[test]
+    fn free_text_and_comments_are_left_alone() {
+        assert_eq!(labels("solution A\n    step       Filter thr‸"), [] as [&str; 0]);
+        assert_eq!(labels("solution A # the sol‸"), [] as [&str; 0]);
     }
 }

@@ -63,3 +63,40 @@ fn form(definition: &Definition, key: &NameKey) -> Option<Anchor> {
     forms.chain(complexes).find(|reference| reference.key == *key).map(|reference| reference.at)
 }
 
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::editor::fixture::fixture;
+
+    /// The text of the name that is gone to, with its file.
+    fn check(text: &str) -> Vec<String> {
+        let fixture = fixture(text);
+        let found = definition(&fixture.snapshot, fixture.file, fixture.offset);
+        let show = |destination: &Destination| {
+            let file = fixture.snapshot.file(destination.file).unwrap();
+            assert!(destination.name.is_empty() || destination.whole.start <= destination.name.start && destination.name.end <= destination.whole.end);
+            format!("{}: {}", file.shown_path().rsplit('/').next().unwrap(), destination.name.of(file.source.as_str()))
+        };
+        found.iter().map(show).collect()
+    }
+
+    #[test]
+    fn names_lead_to_their_blocks() {
+        assert_eq!(check("solution A\n    1 mL       Sto‸ck\n    q.s.       water to 1 L\n\nsolution Stock\n    q.s.       water to 1 L\n"), ["main.prep: Stock"]);
+        assert_eq!(check("use \"stocks.prep\"\nsolution A\n    1 mL       Sto‸ck\n//- stocks.prep\n# Ours\nsolution Stock\n    q.s.       water to 1 L\n"), ["stocks.prep: Stock"]);
+        assert_eq!(check("solution A\n    1 mL       Nothing ‸at all\n"), [] as [&str; 0]);
+    }
+
+    #[test]
+    fn the_built_in_library_is_opened_too() {
+        let salt = check("solution A\n    1 g        sodium chlor‸ide\n");
+        assert!(matches!(salt.as_slice(), [one] if one.starts_with("substances-") && one.ends_with(": sodium chloride")), "{salt:?}");
+        let form = check("solution A\n    1 g        water\n    expect     total dihydrogen phos‸phate at most 1 mol/L\n");
+        assert!(matches!(form.as_slice(), [one] if one.starts_with("ions-") && one.ends_with(": dihydrogen phosphate")), "{form:?}");
+    }
+
+    #[test]
+    fn a_path_leads_to_its_file() {
+        assert_eq!(check("use \"stoc‸ks.prep\"\n//- stocks.prep\n# Ours\n"), ["stocks.prep: "]);
+    }
+}

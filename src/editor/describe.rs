@@ -71,7 +71,7 @@ pub fn charge(charge: i32) -> String {
 
 /// A molar mass, g/mol.
 pub fn molar_mass(kg_per_mol: f64) -> String {
-    format!("{} g/mol", format::fixed(1000.0 * kg_per_mol, if kg_per_mol < 0.1 { 3 } else { 2 }))
+    format!("{} g/mol", format::fixed(1000.0 * kg_per_mol, 2))
 }
 
 /// The caution that belongs to a substance with hazard statements.

@@ -101,3 +101,28 @@ fn visible(span: Span, text: &str) -> Span {
         (None, None) => span,
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::editor::fixture::fixture;
+
+    #[test]
+    fn a_finding_has_words_a_place_and_what_to_do() {
+        let fixture = fixture("solution A\n    1 g        sodium chlorid\n    q.s.       water to 1 L\n");
+        let all = diagnostics(&fixture.snapshot, fixture.file);
+        let unknown = all.iter().find(|one| one.code == Code::UnknownName).unwrap();
+        assert_eq!(unknown.span.of(&fixture.text), "sodium chlorid");
+        assert_eq!(unknown.level, Level::Error);
+        assert!(unknown.message.contains("sodium chlorid") && unknown.message.contains("\nDid you mean sodium chloride?"), "{}", unknown.message);
+        assert_eq!(fixture.snapshot.findings(fixture.file)[unknown.index].finding.code, Code::UnknownName);
+    }
+
+    #[test]
+    fn a_gap_underlines_the_character_before_it() {
+        let fixture = fixture("solution A\n    q.s.       water to\n");
+        let all = diagnostics(&fixture.snapshot, fixture.file);
+        let gap = all.iter().find(|one| one.code == Code::IncompleteLine).unwrap();
+        assert!(!gap.span.is_empty() && !gap.span.of(&fixture.text).contains('\n'), "{gap:?}");
+    }
+}

@@ -28,3 +28,18 @@ pub fn document_links(snapshot: &Snapshot, file: FileId) -> Vec<DocumentLink> {
     })
     .collect()
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::editor::fixture::fixture;
+
+    #[test]
+    fn a_path_is_a_link_where_its_file_is_there() {
+        let fixture = fixture("use \"stocks.prep\"\nuse \"none.prep\"\n//- stocks.prep\n");
+        let links = document_links(&fixture.snapshot, fixture.file);
+        let [link] = links.as_slice() else { panic!("{links:?}") };
+        assert_eq!(link.span.of(&fixture.text), "stocks.prep");
+        assert_ne!(link.file, fixture.file);
+    }
+}

@@ -94,3 +94,28 @@ fn ingredient(state: &FileState, index: usize, block: &Arc<Block>, entry: &Entry
         children: Vec::new(),
     })
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::editor::fixture::fixture;
+
+    #[test]
+    fn blocks_hold_their_ingredients() {
+        let fixture = fixture("# Ours\nsolution A\n    made at    25 °C\n    2.0 g      sodium chloride # salt\n    q.s.       water to 1 L\n\n# Next\nsubstance S\n    formula    NaCl\n    gives      sodium, chloride\n");
+        let symbols = document_symbols(&fixture.snapshot, fixture.file);
+        let shown: Vec<String> = symbols
+            .iter()
+            .flat_map(|block| {
+                let children = block.children.iter().map(|child| format!("  {} | {} | {}", child.name, child.detail, child.span.of(&fixture.text)));
+                std::iter::once(format!("{} | {}", block.name, block.detail)).chain(children)
+            })
+            .collect();
+        let [a, salt, water, s] = shown.as_slice() else { panic!("{shown:#?}") };
+        assert!(a.starts_with("A | pH about 7"), "{a}");
+        assert_eq!(salt, "  sodium chloride | 2.0 g | 2.0 g      sodium chloride");
+        assert_eq!(water, "  water | q.s. | q.s.       water to 1 L");
+        assert_eq!(s, "S | NaCl, 58.44 g/mol");
+        assert!(symbols[0].span.of(&fixture.text).ends_with("to 1 L"));
+    }
+}

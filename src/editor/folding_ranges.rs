@@ -70,3 +70,24 @@ fn runs(state: &FileState, kind: FoldingKind, is_one: impl Fn(&FileState, usize)
     runs.extend(open.map(|span| FoldingRange { span, kind }));
     runs
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::editor::fixture::fixture;
+
+    #[test]
+    fn blocks_comments_and_uses_fold() {
+        let fixture = fixture("# One\n# Two\nuse \"a.prep\"\nuse \"b.prep\"\n\nsolution A\n    q.s.       water to 1 L\n\n# Below\nsolution B\n");
+        let ranges = folding_ranges(&fixture.snapshot, fixture.file);
+        let shown: Vec<(FoldingKind, &str)> = ranges.iter().map(|range| (range.kind, range.span.of(&fixture.text))).collect();
+        assert_eq!(
+            shown,
+            [
+                (FoldingKind::Comment, "# One\n# Two"),
+                (FoldingKind::Uses, "use \"a.prep\"\nuse \"b.prep\""),
+                (FoldingKind::Block, "solution A\n    q.s.       water to 1 L"),
+            ]
+        );
+    }
+}

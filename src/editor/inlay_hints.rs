@@ -1,10 +1,11 @@
 //! Computed values beside the text: short, steady, each of a category that can be switched off.
 
 use super::cursor::{block_span, statement_span};
-use super::values::{Values, finished_ph, joined, judged, measured_out};
+use super::target::definition_of;
+use super::values::{Values, finished_ph, joined, judged, measured_out, shown_ph};
 use crate::evaluate::{LineOutcome, Outcome};
 use crate::finding::Anchor;
-use crate::model::{Action, Addition, Entry, MakeUp, Pair};
+use crate::model::{Action, Addition, Body, Entry, MakeUp, Pair, is_water};
 use crate::syntax::tree::BlockKind;
 use crate::text::{FileId, Span};
 use crate::units::{Unit, format};
@@ -76,7 +77,7 @@ pub fn inlay_hints(snapshot: &Snapshot, file: FileId, range: Span) -> Vec<InlayH
             continue;
         }
         if let Some(values) = Values::of(snapshot, file, index) {
-            Hints { state, index, values, hints: &mut hints }.block();
+            Hints { snapshot, state, index, values, hints: &mut hints }.block();
         }
     }
     hints.retain(|hint| range.touches(hint.offset));
@@ -86,6 +87,7 @@ pub fn inlay_hints(snapshot: &Snapshot, file: FileId, range: Span) -> Vec<InlayH
 
 /// The hints of one solution.
 struct Hints<'a, 'b> {
+    snapshot: &'a Snapshot,
     state: &'a FileState,
     index: usize,
     values: Values<'a>,
@@ -99,7 +101,7 @@ impl<'a> Hints<'a, '_> {
             return;
         }
         self.header(&outcomes);
-        for (index, entry) in self.values.recipe.entries.iter().enumerate() {
+        for (index, entry) in self.values.own_entries() {
             let lines = self.values.lines_of(index);
             if lines.is_empty() {
                 continue;
@@ -130,7 +132,7 @@ impl<'a> Hints<'a, '_> {
         if let [outcome] = outcomes {
             let elsewhere = outcome.uses.iter().find(|(kelvin, _)| (kelvin - outcome.made_at_K).abs() > 0.05);
             if let Some((kelvin, Ok(state))) = elsewhere {
-                label.push_str(&format!(", {} at {}", format::ph(state.pH()), format::temperature(*kelvin)));
+                label.push_str(&format!(", {} at {}", shown_ph(state), format::temperature(*kelvin)));
                 tooltip.push_str(" and where it is used");
             }
             if let (Ok(state), Some(unit)) = (&outcome.finished, Unit::parse("mol/L")) {
@@ -156,6 +158,13 @@ impl<'a> Hints<'a, '_> {
             let from = addition.qualifiers.from.as_ref().map_or(addition.what.text.as_str(), |from| from.text.as_str());
             let what = format!("How much {from} to measure out.");
             self.push(entry.at.line, HintCategory::Measure, "=", shown(lines, |line| measured_out(line, 4)), &what, None);
+            return;
+        }
+        let is_water = |line: &&LineOutcome| {
+            definition_of(self.snapshot, &line.definition)
+                .is_some_and(|definition| matches!(&definition.block.body, Body::Substance(substance) if is_water(substance)))
+        };
+        if addition.about || lines.iter().all(|line| is_water(line)) {
             return;
         }
         let concentrations: Option<Vec<String>> =
@@ -222,3 +231,61 @@ fn shown(lines: &[&LineOutcome], show: impl Fn(&LineOutcome) -> String) -> Optio
     joined(&lines.iter().map(|line| show(line)).collect::<Vec<String>>())
 }
 
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::editor::fixture::fixture;
+
+    /// The text with every hint in brackets where it is shown.
+    fn check(text: &str) -> String {
+        let fixture = fixture(text);
+        let mut shown = fixture.text.clone();
+        let hints = inlay_hints(&fixture.snapshot, fixture.file, Span::new(0, fixture.text.len()));
+        for hint in hints.iter().rev() {
+            shown.insert_str(hint.offset, &format!(" ⟨{}⟩", hint.label));
+        }
+        shown
+    }
+
+    #[test]
+    fn values_stand_behind_what_they_belong_to() {
+        // 50 mmol of Tris (121.136 g/mol), 5 mmol of NaCl (58.44 g/mol).
+        let shown = check("solution Buffer # ours\n    made at    25 °C\n    800 mL     water\n    50 mmol/L  Tris        # base\n    0.2922 g   sodium chloride\n    q.s.       1 mol/L hydrochloric acid to pH 8.10\n    q.s.       water to 1 L\n    expect     pH 8.0 to 8.2\n");
+        let lines: Vec<&str> = shown.lines().collect();
+        assert!(lines[0].starts_with("solution Buffer ⟨pH 8.") && lines[0].contains(" · I 0.03") && lines[0].ends_with(" mol/L⟩ # ours"), "{shown}");
+        assert_eq!(lines[2], "    800 mL     water", "{shown}");
+        assert_eq!(lines[3], "    50 mmol/L  Tris ⟨= 6.057 g⟩        # base", "{shown}");
+        assert_eq!(lines[4], "    0.2922 g   sodium chloride ⟨= 5.00 mmol/L⟩", "{shown}");
+        assert!(lines[5].contains("to pH 8.10 ⟨took 2") && lines[5].ends_with(" mL⟩"), "{shown}");
+        assert!(lines[6].starts_with("    q.s.       water to 1 L ⟨took 1"), "{shown}");
+        assert!(lines[7].starts_with("    expect     pH 8.0 to 8.2 ⟨now 8."), "{shown}");
+    }
+
+    #[test]
+    fn a_pair_shows_both_amounts() {
+        let shown = check("solution P\n    made at    25 °C\n    25 mmol/L  sodium dihydrogen phosphate / disodium hydrogen phosphate to pH 7.00\n    q.s.       water to 1 L\n");
+        let line = shown.lines().nth(2).unwrap();
+        assert!(line.contains("to pH 7.00 ⟨= ") && line.contains(" g / ") && line.ends_with(" g⟩"), "{shown}");
+    }
+
+    #[test]
+    fn a_series_shows_its_first_and_last() {
+        let shown = check("solution Stock\n    made at    25 °C\n    5.844 g    sodium chloride\n    q.s.       water to 1 L\n\nsolution Level\n    made at    25 °C\n    1, 2, 4 mL  Stock\n    q.s.       water to 100 mL\n");
+        assert!(shown.contains("1, 2, 4 mL  Stock ⟨= 1.00 mmol/L to 4.00 mmol/L⟩"), "{shown}");
+    }
+
+    #[test]
+    fn a_computed_amount_can_be_written_down() {
+        let fixture = fixture("solution Buffer\n    made at    25 °C\n    800 mL     water\n    50 mmol/L  Tris\n    q.s.       1 mol/L hydrochloric acid to pH 8.10\n    q.s.       water to 1 L\n");
+        let hints = inlay_hints(&fixture.snapshot, fixture.file, Span::new(0, fixture.text.len()));
+        let with_edit: Vec<&InlayHint> = hints.iter().filter(|hint| hint.text_edit.is_some()).collect();
+        let [took] = with_edit.as_slice() else { panic!("{hints:?}") };
+        assert_eq!(took.category, HintCategory::Taken);
+        assert!(took.text_edit.as_ref().unwrap().1.starts_with(", about 2"), "{took:?}");
+    }
+
+    #[test]
+    fn nothing_is_shown_of_a_recipe_without_values() {
+        assert_eq!(check("solution A\n    1 g        water of nowhere\n    q.s.       water to 1 L\n").matches('⟨').count(), 0);
+    }
+}

@@ -21,7 +21,7 @@ pub fn quantity_at(cursor: &Cursor, token: Token) -> Option<Written> {
     let tokens = &cursor.line.tokens;
     let at = tokens.iter().position(|one| *one == token)?;
     let (number, unit) = match token.kind {
-        TokenKind::Number => (token, unit_behind(tokens, at)?),
+        TokenKind::Number => (token, unit_behind(cursor, at)?),
         TokenKind::Unit => (*tokens.get(..at)?.iter().rev().find(|one| one.kind == TokenKind::Number)?, token),
         _ => return None,
     };
@@ -31,11 +31,12 @@ pub fn quantity_at(cursor: &Cursor, token: Token) -> Option<Written> {
 }
 
 /// The unit that a number has, beyond further numbers of its list or range.
-fn unit_behind(tokens: &[Token], number: usize) -> Option<Token> {
-    for token in tokens.get(number + 1..)? {
+fn unit_behind(cursor: &Cursor, number: usize) -> Option<Token> {
+    for token in cursor.line.tokens.get(number + 1..)? {
         match token.kind {
             TokenKind::Unit => return Some(*token),
-            TokenKind::Number | TokenKind::Separator | TokenKind::Operator | TokenKind::Keyword => {}
+            TokenKind::Number | TokenKind::Separator | TokenKind::Operator => {}
+            TokenKind::Keyword if cursor.text(token.span) == "to" => {}
             _ => return None,
         }
     }
@@ -53,7 +54,7 @@ pub fn conversions(written: &Written) -> Vec<String> {
         .filter(|unit| *unit != written.unit && !matches!(unit.symbol(), "M" | "mM" | "µM" | "nM"))
         .map(|unit| (unit.from_base(written.base), unit))
         .filter(|(value, _)| (0.01..10_000.0).contains(&value.abs()))
-        .map(|(value, unit)| (value, format!("{} {}", format::significant(value, 4), unit.symbol())))
+        .map(|(value, unit)| (value, format!("{} {}", format::plain(value), unit.symbol())))
         .collect();
     // The number nearest to ten reads best.
     shown.sort_by(|(one, _), (other, _)| distance(*one).total_cmp(&distance(*other)));

@@ -84,3 +84,24 @@ fn may_mean(namespace: Namespace, definition: &Definition) -> bool {
     namespace == definition.key.namespace
         || namespace == Namespace::Constituent && definition.key.namespace == Namespace::Ingredient
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::editor::fixture::fixture;
+
+    const TEXT: &str = "use \"stocks.prep\"\nsolution A\n    1 mL       Sto‸ck\n    2 mmol/L   sodium chloride, from stock\n    q.s.       water to 1 L\n//- stocks.prep\nsolution Stock\n    1 g        sodium chloride\n    q.s.       water to 1 L\n";
+
+    #[test]
+    fn every_place_that_names_a_thing_is_found() {
+        let fixture = fixture(TEXT);
+        let all = references(&fixture.snapshot, fixture.file, fixture.offset, true);
+        let shown: Vec<(bool, String)> = all
+            .iter()
+            .map(|one| (one.defines, one.span.of(fixture.snapshot.file(one.file).unwrap().source.as_str()).to_owned()))
+            .collect();
+        assert_eq!(shown, [(true, "Stock".to_owned()), (false, "Stock".to_owned()), (false, "stock".to_owned())]);
+        assert_eq!(references(&fixture.snapshot, fixture.file, fixture.offset, false).len(), 2);
+        assert_eq!(document_highlight(&fixture.snapshot, fixture.file, fixture.offset).len(), 2);
+    }
+}

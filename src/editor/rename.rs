@@ -101,3 +101,33 @@ fn unquoted(written: &str) -> String {
         None => written.to_owned(),
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::editor::fixture::{applied, fixture};
+
+    /// The text of the cursor's file after renaming, or the refusal.
+    fn check(text: &str, new_name: &str) -> Result<String, String> {
+        let fixture = fixture(text);
+        let edits = rename(&fixture.snapshot, fixture.file, fixture.offset, new_name).map_err(|refusal| refusal.0)?;
+        let own = edits.into_iter().filter(|edit| edit.file == fixture.file).map(|edit| (edit.span, edit.text));
+        Ok(applied(&fixture.text, own))
+    }
+
+    #[test]
+    fn header_and_references_change_together() {
+        let text = "solution Sto‸ck\n    q.s.       water to 1 L\n\nsolution A\n    1 mL       stock\n    q.s.       water to 1 L\n";
+        let expected = |header: &str, reference: &str| text.replace("Sto‸ck", header).replace("mL       stock", &format!("mL       {reference}"));
+        assert_eq!(check(text, "Salt stock").unwrap(), expected("Salt stock", "Salt stock"));
+        assert_eq!(check(text, "10x stock").unwrap(), expected("\"10x stock\"", "\"10x stock\""));
+    }
+
+    #[test]
+    fn a_taken_name_and_the_library_are_refused() {
+        let text = "solution Sto‸ck\n    q.s.       water to 1 L\n\nsolution A\n    1 mL       Stock\n    q.s.       water to 1 L\n";
+        assert!(check(text, "A").unwrap_err().contains("already means A"));
+        assert!(check(text, "sodium chloride").unwrap_err().contains("already means"));
+        assert!(check("solution A\n    1 g        sodium chlo‸ride\n", "salt").unwrap_err().contains("built-in library"));
+    }
+}

@@ -32,3 +32,18 @@ fn word(text: &str, offset: usize) -> Span {
     let after: usize = text.get(offset..).unwrap_or_default().chars().take_while(is_word).map(char::len_utf8).sum();
     Span::new(offset - before, offset + after)
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::editor::fixture::fixture;
+
+    #[test]
+    fn a_selection_grows_by_meaning() {
+        let fixture = fixture("solution A\n    1 g        sodium chlo‸ride # salt\n    q.s.       water to 1 L\n");
+        let ranges = selection_ranges(&fixture.snapshot, fixture.file, fixture.offset);
+        let shown: Vec<&str> = ranges.iter().map(|range| range.of(&fixture.text)).collect();
+        assert_eq!(shown[..4], ["chloride", "sodium chloride", "1 g        sodium chloride", "    1 g        sodium chloride # salt"]);
+        assert_eq!(shown.last(), Some(&fixture.text.as_str()));
+    }
+}

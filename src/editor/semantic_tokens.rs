@@ -143,3 +143,24 @@ fn push_lines(tokens: &mut Vec<SemanticToken>, text: &str, token: SemanticToken)
         start += piece.len();
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::editor::fixture::fixture;
+
+    #[test]
+    fn names_are_coloured_by_what_they_mean() {
+        let fixture = fixture("solution A\n    1 g        sodium chloride\n    2 mL       A\n    3 mL       nothing\n        , purity 99 % # salt\n    expect     total sodium at most 1 mol/L\n");
+        let tokens = semantic_tokens(&fixture.snapshot, fixture.file, Span::new(0, fixture.text.len()));
+        let kind = |text: &str| tokens.iter().find(|token| token.span.of(&fixture.text) == text).map(|token| (token.kind, token.defines, token.built_in));
+        assert_eq!(kind("solution"), Some((SemanticKind::Keyword, false, false)));
+        assert_eq!(kind("A"), Some((SemanticKind::Solution, true, false)));
+        assert_eq!(kind("sodium chloride"), Some((SemanticKind::Substance, false, true)));
+        assert_eq!(kind("nothing"), Some((SemanticKind::Unknown, false, false)));
+        assert_eq!(kind("sodium"), Some((SemanticKind::Constituent, false, true)));
+        assert_eq!(kind("# salt"), Some((SemanticKind::Comment, false, false)));
+        assert!(tokens.windows(2).all(|pair| pair[0].span.end <= pair[1].span.start), "in order, without overlap");
+        assert!(tokens.iter().all(|token| !token.span.of(&fixture.text).contains('\n')));
+    }
+}

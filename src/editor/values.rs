@@ -2,18 +2,24 @@
 
 use std::sync::Arc;
 
+use crate::chemistry::State;
 use crate::evaluate::{Evaluation, LineOutcome, Outcome, Role, Verdict};
 use crate::model::{Addition, Block, Entry, Recipe};
 use crate::text::FileId;
 use crate::units::{Dimension, format};
 use crate::workspace::Snapshot;
 
+/// Below this buffer capacity, mol/L, the carbon dioxide of the air and traces on the glass decide the pH. Common practice,
+/// no source: water in air takes up some ten micromoles of it per litre.
+#[allow(non_upper_case_globals, reason = "units keep their spelling")]
+const HARDLY_BUFFERED_mol_per_L: f64 = 1e-4;
+
 /// A recipe with what came out of it.
 #[derive(Clone, Copy, Debug)]
 pub struct Values<'a> {
     /// The block.
     pub block: &'a Arc<Block>,
-    /// What it says.
+    /// What it says, with the lines of the solution that it is like.
     pub recipe: &'a Recipe,
     /// What came out of it.
     pub evaluation: &'a Evaluation,
@@ -24,7 +30,8 @@ impl<'a> Values<'a> {
     pub fn of(snapshot: &'a Snapshot, file: FileId, block_index: usize) -> Option<Self> {
         let block = snapshot.file(file)?.model.blocks.get(block_index)?;
         let evaluation = &snapshot.checked(file, block_index)?.evaluation;
-        Some(Values { block, recipe: block.recipe()?, evaluation })
+        let recipe = evaluation.recipe.as_deref().or(block.recipe())?;
+        Some(Values { block, recipe, evaluation })
     }
 
     /// The outcomes: one, or one for each member of a series. Empty unless every member has values.
@@ -41,9 +48,16 @@ impl<'a> Values<'a> {
         }
     }
 
+    /// The entries that stand on lines of their own in the block, with their indices; not those of a solution that it is
+    /// like.
+    pub fn own_entries(&self) -> impl Iterator<Item = (usize, &'a Entry)> + use<'a> {
+        let like = self.recipe.like.as_ref().map(|like| like.at.line);
+        self.recipe.entries.iter().enumerate().filter(move |(_, entry)| Some(entry.at.line) != like)
+    }
+
     /// The entry whose statement stands on a line of the block, with its index.
     pub fn entry_on(&self, line: usize) -> Option<(usize, &'a Entry)> {
-        self.recipe.entries.iter().enumerate().find(|(_, entry)| entry.at.line == line)
+        self.own_entries().find(|(_, entry)| entry.at.line == line)
     }
 
     /// What the members brought by an entry, in the order of the members.
@@ -95,10 +109,20 @@ pub fn joined(shown: &[String]) -> Option<String> {
     Some(format!("{first} to {last}"))
 }
 
+/// The pH of a state, to one decimal and as `about` where little holds it in place.
+pub fn shown_ph(state: &State) -> String {
+    if is_hardly_buffered(state) { format!("about {}", format::fixed(state.pH(), 1)) } else { format::ph(state.pH()) }
+}
+
+/// Whether next to nothing holds the pH in place.
+pub fn is_hardly_buffered(state: &State) -> bool {
+    state.buffer_capacity_mol_per_L() < HARDLY_BUFFERED_mol_per_L
+}
+
 /// The pH at the making, of one solution or from the first to the last of a series.
 pub fn finished_ph(outcomes: &[&Outcome]) -> Option<String> {
     let shown: Option<Vec<String>> =
-        outcomes.iter().map(|outcome| outcome.finished.as_ref().ok().map(|state| format::ph(state.pH()))).collect();
+        outcomes.iter().map(|outcome| outcome.finished.as_ref().ok().map(shown_ph)).collect();
     joined(&shown?)
 }
 

@@ -190,14 +190,14 @@ pub const WORDS: &[Word] = &[
     joint("on", "on NAME", "Only for findings about this name."),
     joint("because", "because REASON", "Why the finding is accepted, for the next reviewer."),
     joint("diluted", "diluted N-fold [with NAME]", "After one volume is made up to N volumes."),
-    joint("saturation", "to saturation", "As much as dissolves."),
+    joint("saturation", "saturation", "As much as dissolves."),
     joint("revision", "revision N", "The document's revision."),
     joint("effective", "effective DATE", "When the revision takes effect."),
     joint("below", "below T", "Under this temperature."),
     joint("in the dark", "in the dark", "Protected from light."),
     joint("in", "in MATERIAL", "In a container of this material."),
     joint("moist", "moist", "The gas is saturated with water."),
-    joint("air", "under air", "Air, with the carbon dioxide that it holds."),
+    joint("air", "air", "Air, with the carbon dioxide that it holds."),
     joint("readability", "readability QUANTITY", "The smallest step that the balance shows."),
     joint("class A", "class A", "Volumetric ware of class A tolerance."),
     joint("reference", "reference T", "Temperature to which conductivity is referred."),
@@ -302,4 +302,32 @@ pub fn of_statement(statement: &Statement) -> Option<&'static Word> {
         },
     };
     find(spelling, &[WordKind::Statement])
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn every_word_stands_once_in_its_kind() {
+        for (index, word) in WORDS.iter().enumerate() {
+            let again = WORDS.iter().skip(index + 1).find(|other| other.kind == word.kind && other.word == word.word);
+            assert_eq!(again, None);
+            assert!(word.help.ends_with('.'), "{}", word.word);
+        }
+    }
+
+    #[test]
+    fn every_first_word_opens_a_statement_that_knows_it() {
+        for word in of_kind(WordKind::Statement).chain(of_kind(WordKind::Header)) {
+            let tree = crate::syntax::parse(&format!("{} \n", word.word));
+            let content = &tree.lines.first().unwrap().line.content;
+            match content {
+                crate::syntax::tree::Content::Statement(statement) => {
+                    assert_eq!(of_statement(statement).map(|found| found.word), Some(word.word), "{statement:?}");
+                }
+                other => panic!("{}: {other:?}", word.word),
+            }
+        }
+    }
 }

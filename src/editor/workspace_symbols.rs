@@ -49,3 +49,18 @@ pub fn workspace_symbols(snapshot: &Snapshot, query: &str) -> Vec<WorkspaceSymbo
     }
     found
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::editor::fixture::fixture;
+
+    #[test]
+    fn every_word_of_the_query_must_occur() {
+        let fixture = fixture("solution Salt stock\nsolution Sugar stock\n//- other.prep\nbottle Salt\n");
+        let names = |query: &str| -> Vec<String> { workspace_symbols(&fixture.snapshot, query).into_iter().map(|symbol| symbol.name).collect() };
+        assert_eq!(names(""), ["Salt stock", "Sugar stock", "Salt"]);
+        assert_eq!(names("stock sal"), ["Salt stock"]);
+        assert_eq!(names("pepper"), [] as [&str; 0]);
+    }
+}

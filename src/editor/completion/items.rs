@@ -61,8 +61,8 @@ impl<'a> Items<'a> {
 
     /// Adds an item in place of a span, where what was typed of it so far begins it or occurs in it.
     pub fn add(&mut self, span: Span, draft: Draft) {
-        let typed = self.typed(span);
-        let Some((closeness, filter)) = closeness(&typed, &draft) else { return };
+        let spellings = std::iter::once(draft.label.as_str()).chain(draft.spellings.iter().map(String::as_str));
+        let Some((closeness, filter)) = self.closeness(span, spellings) else { return };
         let item = CompletionItem {
             span,
             sort: format!("{:03}{closeness}{}", draft.rank, draft.label.to_lowercase()),
@@ -73,9 +73,37 @@ impl<'a> Items<'a> {
             detail: draft.detail,
             documentation: draft.documentation,
         };
-        if !self.items.iter().any(|other| other.insert == item.insert && other.span == item.span) {
+        // The same thing is offered once, in place of the most that was begun.
+        if !self.items.iter().any(|other| other.insert == item.insert) {
             self.items.push(item);
         }
+    }
+
+    /// Whether what was typed of a span so far may become one of these spellings.
+    pub fn is_begun<'s>(&self, span: Span, spellings: impl IntoIterator<Item = &'s str>) -> bool {
+        self.closeness(span, spellings).is_some()
+    }
+
+    /// How close what was typed of a span is to the nearest of some spellings (0 it begins with it, 1 words of it do, 2 it
+    /// holds it), and that spelling.
+    fn closeness<'s>(&self, span: Span, spellings: impl IntoIterator<Item = &'s str>) -> Option<(u8, String)> {
+        let typed = NameKey::new(self.typed(span).trim());
+        let typed = typed.as_str();
+        let judged = spellings.into_iter().filter_map(|spelling| {
+            let key = NameKey::new(spelling);
+            let key = key.as_str();
+            let close = if key.starts_with(typed) {
+                0
+            } else if typed.split(' ').all(|word| key.split([' ', '-']).any(|part| part.starts_with(word))) {
+                1
+            } else if typed.split(' ').all(|word| key.contains(word)) {
+                2
+            } else {
+                return None;
+            };
+            Some((close, spelling.to_owned()))
+        });
+        judged.min_by_key(|(close, _)| *close)
     }
 
     /// What stands between the beginning of a span and the cursor.
@@ -92,26 +120,4 @@ impl<'a> Items<'a> {
         self.items.truncate(LIMIT);
         Completions { items: self.items, is_incomplete }
     }
-}
-
-/// How close a draft is to what was typed (0 begins with it, 1 a word of it does, 2 holds it), and the spelling that is.
-fn closeness(typed: &str, draft: &Draft) -> Option<(u8, String)> {
-    let typed = NameKey::new(typed.trim());
-    let typed = typed.as_str();
-    let spellings = std::iter::once(&draft.label).chain(&draft.spellings);
-    let judged = spellings.filter_map(|spelling| {
-        let key = NameKey::new(spelling);
-        let key = key.as_str();
-        let close = if key.starts_with(typed) {
-            0
-        } else if typed.split(' ').all(|word| key.split([' ', '-']).any(|part| part.starts_with(word))) {
-            1
-        } else if typed.split(' ').all(|word| key.contains(word)) {
-            2
-        } else {
-            return None;
-        };
-        Some((close, spelling.clone()))
-    });
-    judged.min_by_key(|(close, _)| *close)
 }

@@ -18,17 +18,24 @@ use crate::text::Span;
 struct Wanted {
     namespace: Namespace,
     solutions_only: bool,
+    /// Only names that are written in quotes.
+    quoted_only: bool,
 }
 
 /// Offers the names that can stand where one has been begun.
 pub fn at(items: &mut Items, cursor: &Cursor, statement: &Statement, span: Span) {
     let here = |name: &NameUse| cursor.absolute(name.name.span).start == span.start;
     let Some(name) = names(statement, cursor.block.kind()).into_iter().find(here) else { return };
-    let wanted = Wanted { namespace: name.namespace, solutions_only: name.takes_solutions };
+    let wanted = Wanted { namespace: name.namespace, solutions_only: name.takes_solutions, quoted_only: false };
     offer(items, cursor, wanted, span);
     if let Some(namespace) = name.fallback {
-        offer(items, cursor, Wanted { namespace, solutions_only: false }, span);
+        offer(items, cursor, Wanted { namespace, solutions_only: false, quoted_only: false }, span);
     }
+}
+
+/// Offers names such as `10x salt`, which are read as a quantity until they are written in quotes.
+pub fn begun_with_a_number(items: &mut Items, cursor: &Cursor, span: Span) {
+    offer(items, cursor, Wanted { namespace: Namespace::Ingredient, solutions_only: false, quoted_only: true }, span);
 }
 
 /// Offers the names that belong into a gap.
@@ -45,7 +52,7 @@ pub fn of_kind(items: &mut Items, cursor: &Cursor, expected: Expected, span: Spa
         Some(crate::syntax::tree::PropertyKind::SaturationIndex(_))
     ));
     let namespace = if is_phase { Namespace::Phase } else { namespace };
-    offer(items, cursor, Wanted { namespace, solutions_only }, span);
+    offer(items, cursor, Wanted { namespace, solutions_only, quoted_only: false }, span);
 }
 
 fn offer(items: &mut Items, cursor: &Cursor, wanted: Wanted, span: Span) {
@@ -57,7 +64,7 @@ fn offer(items: &mut Items, cursor: &Cursor, wanted: Wanted, span: Span) {
     for (names, is_own) in [(&scope.own, true), (&scope.built_in, false)] {
         for (namespace, _, definitions) in names.all().filter(|(namespace, ..)| *namespace == wanted.namespace) {
             for definition in definitions {
-                if !is_wanted(definition, cursor.block, wanted) || !seen.insert((definition.key.clone(), definition.block.kind())) {
+                if !is_wanted(definition, cursor.block, wanted) || !items.is_begun(span, spellings(&definition.block)) || !seen.insert((definition.key.clone(), definition.block.kind())) {
                     continue;
                 }
                 let rank = match (namespace, is_own) {
@@ -75,6 +82,7 @@ fn offer(items: &mut Items, cursor: &Cursor, wanted: Wanted, span: Span) {
 fn is_wanted(definition: &Definition, own_block: &std::sync::Arc<Block>, wanted: Wanted) -> bool {
     let kind = definition.block.kind();
     let fits = !wanted.solutions_only || matches!(kind, Some(BlockKind::Solution | BlockKind::Bottle));
+    let fits = fits && (!wanted.quoted_only || written_form(definition.name()).starts_with('"'));
     // Nothing is made from itself.
     fits && !std::sync::Arc::ptr_eq(&definition.block, own_block)
 }
@@ -86,27 +94,32 @@ fn draft(items: &Items, definition: &Definition, rank: u32) -> Draft {
         Some((file, index)) => describe::detail(items.snapshot, file.id, index, block),
         None => String::new(),
     };
-    let mut spellings: Vec<String> = block.also.iter().map(|also| also.text.clone()).collect();
-    let (kind, detail) = match &block.body {
-        Body::Substance(substance) => {
-            spellings.extend(substance.formula.iter().map(|(formula, _)| formula.clone()));
-            (CompletionKind::Substance, detail)
-        }
-        Body::Bottle(_) => (CompletionKind::Bottle, detail),
-        Body::Solid(_) => (CompletionKind::Solid, detail),
-        Body::Lab(_) => (CompletionKind::Lab, detail),
-        Body::Ion(_) => (CompletionKind::Constituent, detail),
-        Body::Solution(_) | Body::None => (CompletionKind::Solution, detail),
+    let kind = match &block.body {
+        Body::Substance(_) => CompletionKind::Substance,
+        Body::Bottle(_) => CompletionKind::Bottle,
+        Body::Solid(_) => CompletionKind::Solid,
+        Body::Lab(_) => CompletionKind::Lab,
+        Body::Ion(_) => CompletionKind::Constituent,
+        Body::Solution(_) | Body::None => CompletionKind::Solution,
     };
     Draft {
         label: name.to_owned(),
         insert: written_form(name),
         documentation: documentation(items, definition),
-        spellings,
+        spellings: spellings(block).skip(1).map(str::to_owned).collect(),
         kind,
         detail,
         rank,
     }
+}
+
+/// Every way in which a thing is spelled: its name, its other names, its formula.
+fn spellings(block: &Block) -> impl Iterator<Item = &str> {
+    let formula = match &block.body {
+        Body::Substance(substance) => substance.formula.as_ref().map(|(formula, _)| formula.as_str()),
+        _ => None,
+    };
+    block.name.iter().chain(&block.also).map(|name| name.text.as_str()).chain(formula)
 }
 
 /// The pKa values of a substance, and what must be kept in mind with it.

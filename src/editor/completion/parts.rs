@@ -58,10 +58,15 @@ fn word_draft(word: &Word, kind: CompletionKind, rank: u32) -> Draft {
     }
 }
 
-/// A joining word.
+/// A joining word, before anything else.
 pub fn word(items: &mut Items, spelling: &str, span: Span) {
+    ranked_word(items, spelling, span, 5);
+}
+
+fn ranked_word(items: &mut Items, spelling: &str, span: Span, rank: u32) {
     if let Some(word) = words::find(spelling, &[WordKind::Joint]) {
-        items.add(span, Draft { insert: format!("{spelling} "), ..word_draft(word, CompletionKind::Keyword, 40) });
+        let insert = if word.form.len() > word.word.len() { format!("{spelling} ") } else { spelling.to_owned() };
+        items.add(span, Draft { insert, ..word_draft(word, CompletionKind::Keyword, rank) });
     }
 }
 
@@ -69,7 +74,7 @@ pub fn word(items: &mut Items, spelling: &str, span: Span) {
 pub fn to(items: &mut Items, statement: &Statement, span: Span) {
     word(items, "to", span);
     if matches!(statement, Statement::QuantumSatis(line) if line.alternative.is_none()) {
-        word(items, "or", span);
+        ranked_word(items, "or", span, 6);
     }
 }
 
@@ -83,7 +88,7 @@ pub fn targets(items: &mut Items, cursor: &Cursor, span: Span) {
     for (index, extent) in ["100 mL", "250 mL", "500 mL", "1 L", "1 kg"].into_iter().enumerate() {
         items.add(span, Draft::plain(extent, CompletionKind::Value, 60 + index as u32));
     }
-    word(items, "saturation", span);
+    ranked_word(items, "saturation", span, 70);
 }
 
 /// The properties that can be expected or sought.
@@ -112,7 +117,7 @@ pub fn ranges(items: &mut Items, cursor: &Cursor, statement: &Statement, span: S
         items.add(span, Draft { detail: "round the present value".to_owned(), ..Draft::plain(present, CompletionKind::Value, 20) });
     }
     for spelling in ["at least", "at most"] {
-        word(items, spelling, span);
+        ranked_word(items, spelling, span, 30);
     }
 }
 
@@ -138,7 +143,6 @@ pub fn qualifiers(items: &mut Items, statement: &Statement, span: Span) {
         Statement::Ingredient(_) | Statement::Or(_) => true,
         Statement::QuantumSatis(_) => matches!(word, "about" | "at most" | "density" | "purity" | "from" | "by weight" | "grade" | "lot"),
         Statement::Pair(_) => matches!(word, "purity" | "grade" | "lot"),
-        Statement::StoredAt(_) => false,
         _ => false,
     };
     for (index, word) in words::of_kind(WordKind::Qualifier).enumerate().filter(|(_, word)| fits(word.word)) {
@@ -154,8 +158,8 @@ pub fn qualifiers(items: &mut Items, statement: &Statement, span: Span) {
         Statement::Under(_) => &["moist"],
         _ => &[],
     };
-    for spelling in joints {
-        word(items, spelling, span);
+    for (index, spelling) in joints.iter().enumerate() {
+        ranked_word(items, spelling, span, 40 + index as u32);
     }
 }
 

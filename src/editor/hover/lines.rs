@@ -3,7 +3,7 @@
 use super::super::cursor::Cursor;
 use super::super::names::names;
 use super::super::page::Page;
-use super::super::target::meanings;
+use super::super::target::{definition_of, meanings};
 use super::super::values::{Values, measured_out};
 use super::molar_mass_of;
 use super::solutions::range;
@@ -23,7 +23,7 @@ pub fn of_line(snapshot: &Snapshot, cursor: &Cursor) -> Option<Page> {
     let mut page = Page::new();
     for line in outcome.lines.iter().filter(|line| line.entry == entry) {
         page.title(line.name.clone(), "");
-        rows(outcome, line, &mut page);
+        rows(snapshot, outcome, line, &mut page);
     }
     series_note(&values, &mut page);
     Some(page)
@@ -44,7 +44,7 @@ pub fn of_name(snapshot: &Snapshot, cursor: &Cursor, definition: &Definition) ->
         _ => None,
     };
     if let Some(line) = meant.or_else(only) {
-        rows(outcome, line, &mut page);
+        rows(snapshot, outcome, line, &mut page);
         series_note(&values, &mut page);
     }
     page
@@ -56,7 +56,7 @@ fn series_note(values: &Values, page: &mut Page) {
     }
 }
 
-fn rows(outcome: &Outcome, line: &LineOutcome, page: &mut Page) {
+fn rows(snapshot: &Snapshot, outcome: &Outcome, line: &LineOutcome, page: &mut Page) {
     let label = match (line.role, line.volume_L) {
         (Role::MakesUp | Role::Adjusts, _) => "took",
         (_, Some(_)) => "measure out",
@@ -67,7 +67,9 @@ fn rows(outcome: &Outcome, line: &LineOutcome, page: &mut Page) {
         Some(_) => format!("{} ({mass})", measured_out(line, 4)),
         None => mass,
     });
-    page.row_if("amount", line.amount_mol.map(|moles| format::amount(moles, 4)));
+    let is_stock = definition_of(snapshot, &line.definition).is_some_and(|definition| definition.block.recipe().is_some());
+    let label = if is_stock { "amount dissolved in it" } else { "amount" };
+    page.row_if(label, line.amount_mol.map(|moles| format::amount(moles, 4)));
     page.row_if("in the finished solution", line.concentration_mol_per_L.map(|value| format::concentration(value, 4)));
     if let Some(point) = outcome.set_points.iter().find(|point| point.entry == line.entry) {
         page.row("pH before", format::ph(point.pH_before));

@@ -226,3 +226,148 @@ fn molar_mass_of(definition: &Definition) -> Option<f64> {
         _ => None,
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::editor::fixture::fixture;
+
+    /// A small library: a stock, a buffer that takes it, and what is expected.
+    const LIBRARY: &str = "\
+use \"other.prep\"
+
+solution Stock
+    made at    25 °C
+    58.44 g    sodium chloride
+    q.s.       water to 1 L
+
+solution Buffer
+    made at    25 °C
+    used at    4 °C
+    800 mL     water
+    50 mmol/L  Tris, purity 99.5 %
+    10 mL      Stock
+    q.s.       1 mol/L hydrochloric acid to pH 8.10
+    q.s.       water to 1 L
+    expect     pH 8.0 to 8.2 at 25 °C
+    expect     total chloride at most 100 mmol/L
+    accept     temperature-shift because it was validated at 4 °C
+
+solution Pair
+    made at    25 °C
+    25 mmol/L  sodium dihydrogen phosphate / disodium hydrogen phosphate to pH 7.00
+    q.s.       water to 1 L
+
+substance Brine salt
+    formula    NaCl
+    gives      sodium, chloride
+    hazard     H319
+
+ion testate
+    formula    C2H3O2
+    charge     -1
+    pKa        4.756 ± 0.002, of testic acid, enthalpy -0.41 kJ/mol
+
+lab Bench
+    room       18 °C to 22 °C
+    balance    readability 0.1 mg, 20 mg to 220 g
+
+//- other.prep
+bottle Spirit
+    96 % w/w   sodium chloride
+";
+
+    /// What is told where a mark is put behind the first `needle` of the library: the characters, then the page.
+    fn check(needle: &str) -> String {
+        let marked = LIBRARY.replacen(needle, &format!("{needle}‸"), 1);
+        assert_ne!(marked, LIBRARY, "{needle}");
+        let fixture = fixture(&marked);
+        let findings: Vec<_> = fixture.snapshot.findings(fixture.file).iter().map(|located| &located.finding.message).collect();
+        match hover(&fixture.snapshot, fixture.file, fixture.offset) {
+            Some(hover) => format!("[{}]\n{}", hover.span.of(&fixture.text), hover.plain),
+            None => format!("nothing; findings: {findings:#?}"),
+        }
+    }
+
+    /// Every page holds the given pieces, in this order.
+    fn holds(needle: &str, pieces: &[&str]) {
+        let page = check(needle);
+        let mut rest = page.as_str();
+        for piece in pieces {
+            match rest.find(piece) {
+                Some(at) => rest = &rest[at + piece.len()..],
+                None => panic!("no {piece:?} in order at {needle:?}:\n{page}"),
+            }
+        }
+        assert!(page.lines().count() <= 24, "more than a screen:\n{page}");
+    }
+
+    #[test]
+    fn a_solution_tells_its_ph_first() {
+        holds("solution Buffer", &["[Buffer]", "Buffer – solution", "\npH  ", " at 25 °C", "at 4 °C (use)", "8.10 as set", "ionic strength", "buffer capacity", "pH with temperature", "−0.0", "volume", "expect pH", "holds", "expect total chloride", "holds", "Caution", "hydrochloric acid (H290"]);
+        holds("solution Stock", &["pH", "about ", "Hardly buffered"]);
+    }
+
+    #[test]
+    fn a_line_tells_what_to_weigh_and_what_the_thing_is() {
+        // 50 mmol of C4H11NO3 (121.136 g/mol by the standard atomic weights) at a purity of 99.5 % are 6.087 g.
+        holds("Tris", &["[Tris]", "Tris – substance, built-in library", "weigh", "6.087 g", "amount", "50.00 mmol", "in the finished solution", "50.00 mmol/L", "formula", "C4H11NO3", "121.14 g/mol", "pKa", "8.07"]);
+        holds("sodium chlor", &["58.44 g", "1.000 mol", "NaCl"]);
+        holds("10 mL      Sto", &["[Stock]", "Stock – solution", "measure out", "10.00 mL", "amount dissolved in it", "10.00 mmol", "pH"]);
+    }
+
+    #[test]
+    fn a_titrant_tells_what_it_took() {
+        holds("1 mol/L hydro", &["[hydrochloric acid]", "took", " mL (", "pH before", "10.", "pH as set", "8.10", "Caution: hydrochloric acid carries GHS H290"]);
+        holds("    q.s.       1 m", &["[mol/L]", "took"]);
+    }
+
+    #[test]
+    fn both_members_of_a_pair_are_weighed() {
+        holds("sodium dihydrogen phosphate", &["weigh", " g", "mmol"]);
+        holds("phosphate /", &["sodium dihydrogen phosphate", "weigh", "disodium hydrogen phosphate", "weigh"]);
+    }
+
+    #[test]
+    fn an_expectation_tells_its_value_and_margin() {
+        holds("expect     pH", &["expect pH – 8.00 to 8.20", "at 25 °C", "holds, 0.", "limit", "Minus the logarithm"]);
+        holds("expect     pH 8", &["expect pH", "holds"]);
+        holds("total chlor", &["[chloride]", "chloride – ion, built-in library", "charge", "−1"]);
+    }
+
+    #[test]
+    fn quantities_are_converted() {
+        holds("50 mmol/L", &["50 mmol/L", "in other units", "0.05 mol/L", "of Tris", "6.057 g/L", "weigh"]);
+        holds("made at    25 °C", &["25 °C", "298.15 K"]);
+    }
+
+    #[test]
+    fn words_are_explained() {
+        holds("made", &["made at\n", "The temperature at which it is made"]);
+        holds("made a", &["made at\n"]);
+        holds("solution", &["solution\n", "Opens the recipe"]);
+        holds("purity", &["purity\n", "How much of what is weighed"]);
+        holds("because", &["because\n"]);
+        holds("accept", &["accept\n"]);
+        holds("temperature-sh", &["[temperature-shift]", "temperature-shift – warning", "scruple explain temperature-shift"]);
+        holds("expect     total", &["expect total chloride", "total\n"].as_slice().get(..1).unwrap());
+    }
+
+    #[test]
+    fn other_blocks_are_described() {
+        holds("Brine", &["Brine salt – substance", "58.44 g/mol", "gives", "sodium, chloride", "Caution: Brine salt carries GHS H319 – see the safety data sheet"]);
+        holds("formula    NaC", &["NaCl – formula", "58.44 g/mol"]);
+        holds("ion testa", &["testate – ion", "charge", "−1", "pKa at 25 °C", "4.7560 ± 0.0020, testic acid"]);
+        holds("of testic a", &["testic acid – form of the ion testate", "4.756"]);
+        holds("lab Bench", &["Bench – lab", "18 °C to 22 °C", "readability 0.1 mg, 20 mg to 220 g"]);
+        holds("use \"oth", &["other.prep", "Spirit", "bottle"]);
+    }
+
+    #[test]
+    fn a_page_is_markdown_without_tables() {
+        let fixture = fixture(&LIBRARY.replacen("solution Buf", "solution Buf‸", 1));
+        let hover = hover(&fixture.snapshot, fixture.file, fixture.offset).unwrap();
+        assert!(hover.markdown.starts_with("**Buffer** – solution\n\n```text\npH "), "{}", hover.markdown);
+        assert!(!hover.markdown.contains('|'));
+    }
+}

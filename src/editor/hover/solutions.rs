@@ -2,7 +2,7 @@
 
 use super::super::page::Page;
 use super::super::target::definition_of;
-use super::super::values::{Values, joined, judged};
+use super::super::values::{Values, is_hardly_buffered, joined, judged, shown_ph};
 use crate::chemistry::State;
 use crate::evaluate::{Outcome, Verdict};
 use crate::finding::Level;
@@ -23,7 +23,7 @@ pub fn rows(snapshot: &Snapshot, file: FileId, block: usize, in_full: bool, page
         [outcome] => one(outcome, in_full, page),
         _ => {
             for (member, outcome) in values.evaluation.members.iter().zip(&outcomes).take(SHOWN) {
-                let ph = outcome.finished.as_ref().map_or_else(|_| "no pH".to_owned(), |state| format!("pH {}", format::ph(state.pH())));
+                let ph = outcome.finished.as_ref().map_or_else(|_| "no pH".to_owned(), |state| format!("pH {}", shown_ph(state)));
                 page.row(member.name.clone(), ph);
             }
             if outcomes.len() > SHOWN {
@@ -61,23 +61,28 @@ fn one(outcome: &Outcome, in_full: bool, page: &mut Page) {
         }
     };
     let assumed = if outcome.made_at_half_width_K > 0.0 { " (middle of the room's range)" } else { "" };
-    page.row("pH", format!("{} at {}{assumed}", format::ph(state.pH()), format::temperature(outcome.made_at_K)));
+    page.row("pH", format!("{} at {}{assumed}", shown_ph(state), format::temperature(outcome.made_at_K)));
     for (kelvin, used) in outcome.uses.iter().filter(|(kelvin, _)| (kelvin - outcome.made_at_K).abs() > 0.05).take(4) {
-        let value = used.as_ref().map_or_else(|failure| format!("none: {failure}"), |state| format::ph(state.pH()));
+        let value = used.as_ref().map_or_else(|failure| format!("none: {failure}"), |state| shown_ph(state));
         page.row("", format!("{value} at {} (use)", format::temperature(*kelvin)));
     }
     for point in &outcome.set_points {
-        page.row("", format!("{} as set, where it stood at {} before", format::ph(point.state.pH()), format::ph(point.pH_before)));
+        page.row("", format!("{} as set, from {}", format::ph(point.state.pH()), format::ph(point.pH_before)));
     }
     page.row("ionic strength", format::concentration(state.ionic_strength_mol_per_L(), 3));
     page.row("buffer capacity", format!("{} per unit of pH", format::concentration(state.buffer_capacity_mol_per_L(), 3)));
-    if in_full {
+    if in_full && !is_hardly_buffered(state) {
         details(state, page);
+    }
+    if in_full {
         page.row("density", format!("{}{}", format::density(state.density_kg_per_m3(), 4), if state.volume_is_estimated { " (estimated)" } else { "" }));
     }
     page.row("volume", format!("{} at {}", format::volume(outcome.volume_L, 4), format::temperature(outcome.made_at_K)));
     if in_full {
         page.row("mass", format::mass(outcome.mass_kg, 4));
+        if is_hardly_buffered(state) {
+            page.sentence("Hardly buffered: the air and traces on the glass decide its pH.");
+        }
         if !state.warnings.is_empty() {
             page.sentence("The activity model is at the end of its range here, or beyond it: take the values as a guide.");
         }

@@ -6,12 +6,12 @@ use super::super::target::{find, locate, spelling};
 use super::solutions;
 use crate::model::*;
 use crate::text::FileId;
-use crate::units::{Dimension, format};
+use crate::units::{Unit, format};
 use crate::workspace::Snapshot;
 
 /// The temperature at which constants are shown, K.
 const SHOWN_AT_K: f64 = 298.15;
-/// How many complexes are shown.
+/// How many entries of a long list are shown.
 const SHOWN: usize = 6;
 
 /// The page of a thing. `used` is the name by which a line calls it, and what the line does with it.
@@ -87,7 +87,7 @@ fn substance(snapshot: &Snapshot, from: FileId, definition: &Definition, substan
     page.row_if("gives", (!gives.is_empty()).then(|| gives.join(", ")));
     page.row_if("pKa", pka_of(snapshot, from, substance));
     page.row_if("density", substance.density.map(|density| format::density(density, 4)));
-    page.row_if("solubility", substance.solubility.first().map(|(amount, kelvin)| {
+    page.row_if("solubility", nearest_solubility(substance).map(|(amount, kelvin)| {
         let value = format::with_unit(amount.value, Some(amount.unit));
         kelvin.map_or(value.clone(), |kelvin| format!("{value} at {}", format::temperature(kelvin)))
     }));
@@ -98,8 +98,9 @@ fn substance(snapshot: &Snapshot, from: FileId, definition: &Definition, substan
         page.sentence(caution);
     }
     if !substance.keep_away_from.is_empty() {
-        let names: Vec<&str> = substance.keep_away_from.iter().map(|name| name.text.as_str()).collect();
-        page.sentence(format!("Keep away from {}.", names.join(", ")));
+        let names: Vec<&str> = substance.keep_away_from.iter().map(|name| name.text.as_str()).take(SHOWN).collect();
+        let more = if substance.keep_away_from.len() > SHOWN { " and others" } else { "" };
+        page.sentence(format!("Keep away from {}{more}.", names.join(", ")));
     }
 }
 
@@ -117,6 +118,12 @@ pub fn pka_of(snapshot: &Snapshot, from: FileId, substance: &Substance) -> Optio
     }
     values.retain(|value| !value.is_empty());
     (!values.is_empty()).then(|| values.join(", "))
+}
+
+/// The solubility nearest to the temperature at which constants are shown.
+fn nearest_solubility(substance: &Substance) -> Option<&(Amount, Option<f64>)> {
+    let distance = |(_, kelvin): &&(Amount, Option<f64>)| (kelvin.unwrap_or(SHOWN_AT_K) - SHOWN_AT_K).abs();
+    substance.solubility.iter().min_by(|one, other| distance(one).total_cmp(&distance(other)))
 }
 
 fn bottle(snapshot: &Snapshot, definition: &Definition, recipe: &Recipe, page: &mut Page) {
@@ -187,10 +194,11 @@ fn lab(lab: &Lab, page: &mut Page) {
     page.row_if("volumetric ware", (!lab.wares.is_empty()).then(|| format::plain(lab.wares.len() as f64)));
 }
 
-/// A round mass without superfluous zeros.
+/// A round mass in the unit in which it is written shortest, as balances state theirs: a tenth of a milligram is `0.1 mg`.
 fn plain_mass(kilograms: f64) -> String {
-    let unit = format::readable_unit(kilograms, Dimension::Mass, 4);
-    format!("{} {}", format::plain(unit.from_base(kilograms)), unit.symbol())
+    let units = ["g", "mg", "µg", "kg"].into_iter().filter_map(Unit::parse);
+    let written = units.map(|unit| format!("{} {}", format::plain(unit.from_base(kilograms)), unit.symbol()));
+    written.min_by_key(|text| text.chars().count()).unwrap_or_default()
 }
 
 /// A constant at 25 °C with its uncertainty and what it belongs to.
