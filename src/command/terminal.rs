@@ -32,7 +32,7 @@ impl Terminal {
 
     /// How many columns there are.
     pub fn width(&self) -> usize {
-        let asked = terminal_size::terminal_size().map(|(width, _)| usize::from(width.0));
+        let asked = terminal_size::terminal_size_of(io::stdout()).map(|(width, _)| usize::from(width.0));
         asked.unwrap_or(PAGE_WIDTH).clamp(40, MOST_WIDTH)
     }
 
