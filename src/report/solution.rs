@@ -95,6 +95,7 @@ pub struct StateReport {
     pub ionic_strength_mol_per_kg: Option<f64>,
     pub buffer_capacity_mol_per_L: Option<f64>,
     pub density_kg_per_m3: Option<f64>,
+    pub conductivity_S_per_m: Option<f64>,
     pub osmolality_mol_per_kg: Option<f64>,
     pub why: Option<String>,
 }
@@ -132,6 +133,15 @@ pub struct ExpectationReport {
     pub why: Option<String>,
 }
 
+/// Conductivity is not told where ions without a known conductivity carry more than this share of the ionic strength.
+const MOST_UNKNOWN: f64 = 0.02;
+
+/// The conductivity, S/m, where nearly all that conducts is known.
+pub(super) fn conductivity(state: &State) -> Option<f64> {
+    let conductivity = state.conductivity();
+    (conductivity.unknown_share <= MOST_UNKNOWN).then_some(conductivity.value_S_per_m).and_then(number)
+}
+
 /// Everything that is known of a solution.
 pub fn solution_report(subject: &Subject) -> SolutionReport {
     let outcome = subject.member.outcome.as_deref();
@@ -164,7 +174,7 @@ pub fn solution_report(subject: &Subject) -> SolutionReport {
         dpH_dT_per_K: of_state(State::dpH_dT_per_K),
         dilution_value: state.and_then(|state| state.dilution_value().ok()).and_then(number),
         density_kg_per_m3: of_state(State::density_kg_per_m3),
-        conductivity_S_per_m: None,
+        conductivity_S_per_m: state.and_then(conductivity),
         osmolality_mol_per_kg: of_state(State::osmolality_mol_per_kg),
         ingredients: lines(outcome).map(|line| ingredient(subject, line)).collect(),
         set_points: outcome.into_iter().flat_map(|outcome| &outcome.set_points).map(|point| set_point(subject, point)).collect(),
@@ -233,6 +243,7 @@ fn state_report(temperature_K: f64, state: &Result<State, Failure>) -> StateRepo
         ionic_strength_mol_per_kg: of_state(|state| state.ionic_strength_mol_per_kg),
         buffer_capacity_mol_per_L: of_state(State::buffer_capacity_mol_per_L),
         density_kg_per_m3: of_state(State::density_kg_per_m3),
+        conductivity_S_per_m: state.as_ref().ok().and_then(conductivity),
         osmolality_mol_per_kg: of_state(State::osmolality_mol_per_kg),
         why: why(state),
     }

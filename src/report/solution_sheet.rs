@@ -4,7 +4,7 @@
 use super::assumptions::assumptions;
 use super::cautions::{cautions, hazards};
 use super::sheet::{Column, Part, Sheet, Table};
-use super::solution::reason;
+use super::solution::{conductivity, reason};
 use super::Subject;
 use crate::chemistry::State;
 use crate::evaluate::{LineOutcome, Outcome, SetPoint, Verdict};
@@ -94,6 +94,9 @@ fn state_facts(state: &State, fact: &mut impl FnMut(&str, String)) {
     fact("buffer capacity", format!("{} per unit of pH", format::concentration(state.buffer_capacity_mol_per_L(), 3)));
     let molality = format::molality(state.ionic_strength_mol_per_kg, 3);
     fact("ionic strength", format!("{} ({molality})", format::concentration(state.ionic_strength_mol_per_L(), 3)));
+    if let Some(conductivity) = conductivity(state) {
+        fact("conductivity", format!("{} at {}", format::conductivity(conductivity, 3), format::temperature(state.temperature_K)));
+    }
     fact("osmolality", format::osmolality(state.osmolality_mol_per_kg(), 3));
     fact("density", format::density(state.density_kg_per_m3(), FIGURES));
 }
