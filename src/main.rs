@@ -2,5 +2,5 @@
 
 fn main() {
     // Not a return: after `serve` a thread may still wait for input.
-    std::process::exit(scruple::command::run());
+    std::process::exit(scruple::command::run(scruple::server::run));
 }

@@ -11,6 +11,9 @@ mod serve;
 mod show;
 mod terminal;
 
+use std::io;
+use std::path::Path;
+
 use clap::{ColorChoice as ColorOption, CommandFactory, Parser, Subcommand};
 
 use crate::library;
@@ -70,8 +73,9 @@ impl Ending {
     }
 }
 
-/// Runs what the command line says and returns the exit code of the process.
-pub fn run() -> i32 {
+/// Runs what the command line says and returns the exit code of the process. `server` is what `serve` starts, with the log file
+/// that the user asks for; it is handed in because command line and server do not know each other.
+pub fn run(server: impl FnOnce(Option<&Path>) -> io::Result<i32>) -> i32 {
     let arguments = match Arguments::try_parse() {
         Ok(arguments) => arguments,
         Err(error) => {
@@ -86,7 +90,7 @@ pub fn run() -> i32 {
         Verb::Show(show) => show.run(&terminal),
         Verb::Lookup(lookup) => lookup.run(&terminal),
         Verb::Explain(explain) => explain.run(&terminal),
-        Verb::Serve(serve) => serve.run(),
+        Verb::Serve(serve) => serve.run(server),
         Verb::Completions(completions) => completions.run(&terminal, &mut Arguments::command()),
     };
     match ended {

@@ -1,11 +1,11 @@
 //! `scruple serve`: the language server, for editors.
 
-use std::path::PathBuf;
+use std::io;
+use std::path::{Path, PathBuf};
 
 use clap::Args;
 
 use super::{Ending, Trouble};
-use crate::server;
 
 /// Serve an editor over standard input and output (Language Server Protocol)
 #[derive(Debug, Args)]
@@ -22,8 +22,8 @@ pub(super) struct Serve {
 }
 
 impl Serve {
-    pub fn run(&self) -> Result<Ending, Trouble> {
-        match server::run(self.log.as_deref()) {
+    pub fn run(&self, server: impl FnOnce(Option<&Path>) -> io::Result<i32>) -> Result<Ending, Trouble> {
+        match server(self.log.as_deref()) {
             Ok(code) => Ok(Ending::Code(code)),
             Err(error) => Err(Trouble(format!("The server cannot start: {error}."))),
         }
