@@ -13,21 +13,22 @@ use crate::workspace::{ConfigurationError, FileState, Located};
 /// How many fixes are drawn; the first is the likeliest.
 const FIXES_SHOWN: usize = 3;
 
+/// How many places in other files are drawn.
+const PLACES_SHOWN: usize = 2;
+
 /// A finding with its lines, in colours (ANSI escapes), `width` columns wide. The caller takes the colours out where there
 /// is no terminal.
 pub fn excerpt(selection: &Selection, file: &FileState, located: &Located, width: usize) -> String {
     let finding = &located.finding;
-    let path = selection.name(&file.path);
+    let path = selection.file_name(file);
     let title = severity(finding.level).primary_title(finding.message.as_str()).id(finding.code.name());
-    // The logical line that holds the place, and the lines of the related places; all else is folded away.
     let mut first = Group::with_title(title);
     if file.source.is_empty() {
         first = first.element(Origin::path(path.clone()));
     } else {
-        let here = Snippet::source(file.source.as_str())
+        let mut here = Snippet::source(file.source.as_str())
             .path(path.clone())
             .annotation(AnnotationKind::Primary.span(marked(file, located.span)));
-        let mut here = here;
         let mut elsewhere = Vec::new();
         for related in &finding.related {
             let Some((other, span)) = selection.snapshot.place(file.id, located.block, &related.place) else { continue };
@@ -36,10 +37,14 @@ pub fn excerpt(selection: &Selection, file: &FileState, located: &Located, width
             if other.id == file.id {
                 here = here.annotation(mark);
             } else {
-                elsewhere.push(Snippet::source(other.source.as_str()).path(selection.name(&other.path)).annotation(mark));
+                elsewhere.push(Snippet::source(other.source.as_str()).path(selection.file_name(other)).annotation(mark));
             }
         }
-        first = first.element(here).elements(elsewhere);
+        let hidden = elsewhere.len().saturating_sub(PLACES_SHOWN);
+        first = first.element(here).elements(elsewhere.into_iter().take(PLACES_SHOWN));
+        if hidden > 0 {
+            first = first.element(Severity::NOTE.message(format!("and {hidden} other places")));
+        }
     }
     if !finding.help.is_empty() {
         first = first.element(Severity::HELP.message(finding.help.as_str()));

@@ -89,7 +89,7 @@ pub(super) fn finding_report(selection: &Selection, file: &FileState, located: &
         let (other, span) = snapshot.place(file.id, located.block, &related.place)?;
         let other = snapshot.file(other)?;
         let (line, column, ..) = range(&other.source, span);
-        Some(RelatedReport { file: selection.name(&other.path), line, column, message: related.message.clone() })
+        Some(RelatedReport { file: selection.file_name(other), line, column, message: related.message.clone() })
     });
     let fixes = finding.fixes.iter().map(|fix| FixReport {
         title: fix.title.clone(),
@@ -106,7 +106,7 @@ pub(super) fn finding_report(selection: &Selection, file: &FileState, located: &
     FindingReport {
         code: Some(finding.code.name()),
         level: finding.level.word(),
-        file: selection.name(&file.path),
+        file: selection.file_name(file),
         line,
         column,
         end_line,

@@ -8,7 +8,7 @@ use crate::evaluate::Member;
 use crate::finding::{Anchor, Level};
 use crate::model::{Block, DefinitionKey, NameKey, Recipe};
 use crate::text::{Columns, FileId, Position, Span};
-use crate::workspace::{Checked, FileState, Located, Snapshot};
+use crate::workspace::{Checked, FileState, Located, Origin, Snapshot};
 
 /// Some files of a snapshot.
 #[derive(Clone, Debug)]
@@ -59,6 +59,14 @@ impl Selection {
     /// A path as the reader writes it: from the base where it lies below, whole otherwise, with forward slashes.
     pub fn name(&self, path: &camino::Utf8Path) -> String {
         path.strip_prefix(&self.base).unwrap_or(path).as_str().replace('\\', "/")
+    }
+
+    /// A file as the reader knows it; those of the built-in library say so.
+    pub fn file_name(&self, file: &FileState) -> String {
+        match file.origin {
+            Origin::BuiltIn => format!("built-in library/{}", file.path),
+            _ => self.name(&file.path),
+        }
     }
 
     /// Every finding of the files, in the order of files and places.

@@ -8,7 +8,7 @@ use super::solution::{conductivity, reason};
 use super::Subject;
 use crate::chemistry::State;
 use crate::evaluate::{LineOutcome, Outcome, SetPoint, Verdict};
-use crate::model::{Action, Amount, Reference, Stated, Storage};
+use crate::model::{self, Action, Amount, Body, Reference, Stated, Storage};
 use crate::units::{Dimension, format};
 
 /// Significant figures of what is weighed and measured.
@@ -108,12 +108,14 @@ fn signed(value: f64, decimals: usize) -> String {
 
 fn ingredients(subject: &Subject, outcome: &Outcome) -> Table {
     let rows = outcome.lines.iter().map(|line| {
+        // How many moles of water there are helps nobody.
+        let counts = |value: Option<f64>| value.filter(|_| !is_water(subject, line));
         vec![
             subject.line(line.at).to_string(),
             take(subject, line),
             what(subject, line),
-            line.amount_mol.map(|amount| format::amount(amount, FIGURES)).unwrap_or_default(),
-            line.concentration_mol_per_L.map(|brought| format::concentration(brought, FIGURES)).unwrap_or_default(),
+            counts(line.amount_mol).map(|amount| format::amount(amount, FIGURES)).unwrap_or_default(),
+            counts(line.concentration_mol_per_L).map(|brought| format::concentration(brought, FIGURES)).unwrap_or_default(),
         ]
     });
     Table {
@@ -126,6 +128,11 @@ fn ingredients(subject: &Subject, outcome: &Outcome) -> Table {
         ],
         rows: rows.collect(),
     }
+}
+
+fn is_water(subject: &Subject, line: &LineOutcome) -> bool {
+    let block = subject.selection.definition(&line.definition);
+    block.is_some_and(|block| matches!(&block.body, Body::Substance(substance) if model::is_water(substance)))
 }
 
 /// How much is taken: as written where the line states it, else worked out.
