@@ -73,7 +73,7 @@ fn a_clean_recipe_passes_and_a_failing_one_does_not() {
 fn the_failing_level_decides() {
     let folder = scratch("level");
     // Nothing states the temperature: a hint.
-    fs::write(folder.join("hint.prep"), CLEAN.replace("    made at    25 °C\n", "")).unwrap();
+    fs::write(folder.join("hint.prep"), "solution Salt\n    9 g        sodium chloride\n    q.s.       water to 1 L\n").unwrap();
     assert_eq!(code(&run(&folder, &["check", "--fail-on", "warning", "hint.prep"])), 0);
     assert_eq!(code(&run(&folder, &["check", "--fail-on", "hint", "hint.prep"])), 1);
     fs::write(folder.join("scruple.toml"), "[findings]\ntemperature-assumed = \"error\"\n").unwrap();

@@ -31,7 +31,6 @@ const ONLY_IN: &[(&[&str], &[&str])] = &[
     (&["pest::", "pest_derive"], &["syntax"]),
     (&["ropey::"], &["text"]),
     (&["tower_lsp", "lsp_types", "tokio::", "futures::", "tower::"], &["server"]),
-    (&["nalgebra::"], &["chemistry"]),
     (&["clap::", "clap_complete", "indicatif::", "anstream::"], &["command"]),
     (&["annotate_snippets"], &["report/excerpt.rs"]),
     (&["ignore::"], &["workspace/disk.rs"]),
