@@ -232,15 +232,18 @@ fn every_path_in_the_developers_page_exists() {
 }
 
 #[test]
-fn every_dependency_has_its_reason() {
+fn every_dependency_has_its_reason_and_is_used() {
     let page = fs::read_to_string(root().join("DEVELOPERS.md")).expect("the page is there");
     let manifest = fs::read_to_string(root().join("Cargo.toml")).expect("the manifest is there");
-    let mut in_dependencies = false;
+    let program: String = sources("src").into_iter().map(|(_, text)| text).collect();
+    let mut table = "";
     for line in manifest.lines() {
         if line.starts_with('[') {
-            in_dependencies = line.ends_with("dependencies]");
-        } else if in_dependencies && let Some((name, _)) = line.split_once(" = ") {
+            table = line;
+        } else if table.ends_with("dependencies]") && let Some((name, _)) = line.split_once(" = ") {
             assert!(page.contains(&format!("`{name}`")), "DEVELOPERS.md gives no reason for {name}");
+            let path = name.replace('-', "_");
+            assert!(table == "[dev-dependencies]" || program.contains(&path), "nothing uses {name}");
         }
     }
 }
