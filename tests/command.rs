@@ -139,7 +139,7 @@ fn a_broken_recipe_gives_findings_and_nulls_and_no_crash() {
 fn only_the_named_file_is_spoken_of_though_it_uses_others() {
     let shown = json(&run(&fixtures(), &["show", "eluent.prep", "--format", "json"]));
     let names: Vec<&str> = shown.as_array().unwrap().iter().map(|solution| solution["name"].as_str().unwrap()).collect();
-    assert_eq!(names, ["Column eluent", "Rinse (25 mL)", "Rinse (50 mL)", "Rinse (75 mL)"]);
+    assert_eq!(names, ["Column eluent", "Rinse (25 mL)", "Rinse (50 mL)", "Rinse (75 mL)", "Strong eluent"]);
     assert!(shown[0]["pH"].is_number(), "the stock in the other file is known");
 }
 

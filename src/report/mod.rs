@@ -5,6 +5,7 @@ mod assumptions;
 mod cautions;
 mod excerpt;
 mod finding;
+mod line_words;
 mod number;
 mod selection;
 pub mod sheet;

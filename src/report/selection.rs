@@ -32,7 +32,7 @@ pub struct Subject<'a> {
     pub index: usize,
     /// Its block.
     pub block: &'a Block,
-    /// Its lines as the language means them.
+    /// Its lines as the language means them, those of a solution that it is `like` among them.
     pub recipe: &'a Recipe,
     /// What is known of the block.
     pub checked: &'a Checked,
@@ -103,7 +103,7 @@ impl Selection {
                 file,
                 index,
                 block,
-                recipe,
+                recipe: checked.evaluation.recipe.as_deref().unwrap_or(recipe),
                 checked,
                 member_index,
                 member,
@@ -144,6 +144,11 @@ impl<'a> Subject<'a> {
     pub fn written(&self, line: usize, span: Span) -> String {
         let text = self.block.lines.get(line).map_or("", |line| span.of(&line.text));
         text.split_whitespace().collect::<Vec<_>>().join(" ")
+    }
+
+    /// Whether a line was taken over from the solution that this one is `like`: its words stand in another block.
+    pub fn is_taken_over(&self, at: Anchor) -> bool {
+        self.recipe.like.as_ref().is_some_and(|like| like.at.line == at.line)
     }
 
     /// The findings of the solution's block.

@@ -3,13 +3,14 @@
 
 use super::assumptions::assumptions;
 use super::cautions::{cautions, hazards};
+use super::line_words::{amount_taken, name_taken};
 use super::sheet::{Column, Part, Sheet, Table};
 use super::solution::{conductivity, reason};
 use super::Subject;
 use crate::chemistry::State;
 use crate::evaluate::{LineOutcome, Outcome, SetPoint, Verdict};
-use crate::model::{self, Action, Amount, Body, Reference, Stated, Storage};
-use crate::units::{Dimension, format};
+use crate::model::{self, Body, Stated, Storage};
+use crate::units::format;
 
 /// Significant figures of what is weighed and measured.
 const FIGURES: usize = 4;
@@ -112,8 +113,8 @@ fn ingredients(subject: &Subject, outcome: &Outcome) -> Table {
         let counts = |value: Option<f64>| value.filter(|_| !is_water(subject, line));
         vec![
             subject.line(line.at).to_string(),
-            take(subject, line),
-            what(subject, line),
+            amount_taken(subject, line),
+            name_taken(subject, line),
             counts(line.amount_mol).map(|amount| format::amount(amount, FIGURES)).unwrap_or_default(),
             counts(line.concentration_mol_per_L).map(|brought| format::concentration(brought, FIGURES)).unwrap_or_default(),
         ]
@@ -133,62 +134,6 @@ fn ingredients(subject: &Subject, outcome: &Outcome) -> Table {
 fn is_water(subject: &Subject, line: &LineOutcome) -> bool {
     let block = subject.selection.definition(&line.definition);
     block.is_some_and(|block| matches!(&block.body, Body::Substance(substance) if model::is_water(substance)))
-}
-
-/// How much is taken: as written where the line states it, else worked out.
-fn take(subject: &Subject, line: &LineOutcome) -> String {
-    let measured = match line.volume_L {
-        Some(volume) => format::volume(volume, FIGURES),
-        None => format::mass(line.mass_kg, FIGURES),
-    };
-    match subject.recipe.entries.get(line.entry).map(|entry| &entry.action) {
-        Some(Action::Add(addition)) => {
-            let amount = addition.amounts.get(subject.member_index).or(addition.amounts.last());
-            let written = amount.filter(|_| subject.recipe.members == 1).and_then(|amount| as_written(subject, line, amount));
-            let about = if addition.about { "about " } else { "" };
-            let tolerance = addition.qualifiers.tolerance.map(|stated| subject.written(stated.at.line, stated.at.span));
-            let tolerance = tolerance.map(|words| format!(" ± {}", words.trim_start_matches(['±', ' ']))).unwrap_or_default();
-            format!("{about}{}{tolerance}", written.unwrap_or(measured))
-        }
-        // What a meter or a mark decides is known only about.
-        Some(Action::MakeUp(_)) => match line.volume_L {
-            Some(volume) => format!("about {}", format::volume(volume, 3)),
-            None => format!("about {}", format::mass(line.mass_kg, 3)),
-        },
-        Some(Action::Alternative(_)) => format!("or {measured}"),
-        _ => measured,
-    }
-}
-
-/// A mass or volume in the author's own digits; other quantities are worked out.
-fn as_written(subject: &Subject, line: &LineOutcome, amount: &Amount) -> Option<String> {
-    matches!(amount.dimension(), Dimension::Mass | Dimension::Volume).then(|| subject.written(line.at.line, amount.span))
-}
-
-/// What is taken: strength and name as written, the stock it comes from, what it is taken to.
-fn what(subject: &Subject, line: &LineOutcome) -> String {
-    let Some(entry) = subject.recipe.entries.get(line.entry) else { return line.name.clone() };
-    let named = |reference: &Reference| match reference.strength {
-        Some(strength) => subject.written(reference.at.line, strength.span.to(reference.at.span)),
-        None => reference.text.clone(),
-    };
-    match &entry.action {
-        Action::Add(addition) => match &addition.qualifiers.from {
-            Some(from) => format!("{}, for {}", named(from), addition.what.text),
-            None => named(&addition.what),
-        },
-        Action::MakeUp(make_up) => {
-            let used = make_up.alternative.as_ref().filter(|other| other.text == line.name).unwrap_or(&make_up.what);
-            let goal = make_up.goals.get(subject.member_index).or(make_up.goals.last());
-            match goal {
-                Some(goal) => format!("{} to {}", named(used), subject.written(goal.at.line, goal.at.span).trim_start_matches("to ")),
-                None => named(used),
-            }
-        }
-        Action::Alternative(addition) => named(&addition.what),
-        Action::Pair(pair) => named(if pair.second.text == line.name { &pair.second } else { &pair.first }),
-        _ => line.name.clone(),
-    }
 }
 
 fn set_point(subject: &Subject, point: &SetPoint) -> Part {
@@ -215,7 +160,10 @@ fn keeping(subject: &Subject) -> Vec<String> {
         let text = subject.block.lines.get(line).map_or(0, |line| line.text.len());
         subject.written(line, crate::text::Span::new(0, text))
     };
-    let stored = |storage: &Storage| subject.written(storage.at.line, storage.at.span);
+    let stored = |storage: &Storage| match subject.recipe.like.as_ref().filter(|_| subject.is_taken_over(storage.at)) {
+        Some(like) => format!("kept as {}", like.text),
+        None => subject.written(storage.at.line, storage.at.span),
+    };
     let mut said: Vec<String> = subject.recipe.storage.iter().map(stored).collect();
     said.extend(subject.recipe.ready_after.iter().map(|stated| without_comment(&whole(stated.at.line))));
     said.extend(subject.recipe.use_within.iter().map(|stated| without_comment(&whole(stated.at.line))));
