@@ -97,15 +97,17 @@ impl System {
                 column_of[id.0] = components.len();
             }
         }
+        // Room for four forms of each component, so that the lists seldom grow.
+        let room = 4 * components.len() + 2;
         let mut system = Self {
-            species: Vec::with_capacity(4 * components.len()),
+            species: Vec::with_capacity(room),
             components,
-            parts: Vec::new(),
-            ends: Vec::new(),
+            parts: Vec::with_capacity(2 * room),
+            ends: Vec::with_capacity(room),
             counts: Matrix::zeros(0, 0),
-            water: Vec::new(),
-            charge: Vec::new(),
-            ln_beta: Vec::new(),
+            water: Vec::with_capacity(room),
+            charge: Vec::with_capacity(room),
+            ln_beta: Vec::with_capacity(room),
             interactions: Vec::new(),
             totals_mol,
             water_mol: mixture.water_kg / WATER_kg_per_mol,
