@@ -4,7 +4,7 @@ use std::sync::Arc;
 
 use super::names::{self, Found, written_form};
 use super::{Context, Outcome, Refusal, Solute, ingredient_has_no_value};
-use crate::chemistry::{Mixture, State};
+use crate::chemistry::{Mixture, State, water};
 use crate::finding::{Code, Finding};
 use crate::model::{Amount, DefinitionKey, Qualifiers, Reference, StrengthKind, Substance, is_water};
 use crate::syntax::tree::BlockKind;
@@ -101,7 +101,7 @@ pub fn goods(
 ) -> Result<Goods, Refusal> {
     let stated_density = qualifiers.density.map(|density| density.value);
     let goods = match (found.substance(), &reference.strength) {
-        (Some(substance), None) => pure(reference, found, substance, qualifiers, context)?,
+        (Some(substance), None) => pure(reference, found, substance, qualifiers, temperature_K, context)?,
         (Some(substance), Some(strength)) => match strength.kind {
             StrengthKind::Concentration(amount) => {
                 let is_it = |outcome: &Outcome| has_strength(outcome, &amount);
@@ -113,7 +113,7 @@ pub fn goods(
                 ideal_solution(reference, found, substance, &amount, stated_density, temperature_K, context)?
             }
             StrengthKind::Ratio { of_it, of_water } => {
-                let pure = pure(reference, found, substance, qualifiers, context)?;
+                let pure = pure(reference, found, substance, qualifiers, temperature_K, context)?;
                 diluted(reference, pure, of_it, of_water, temperature_K, context)?
             }
         },
@@ -173,15 +173,16 @@ fn pure(
     found: &Found,
     substance: &Substance,
     qualifiers: &Qualifiers,
+    temperature_K: f64,
     context: &Context,
 ) -> Result<Goods, Refusal> {
     let purity = qualifiers.purity.map_or(1.0, |purity| purity.value);
-    let water = qualifiers.water.map_or(0.0, |water| water.value);
-    let share = purity * (1.0 - water);
+    let moisture = qualifiers.water.map_or(0.0, |water| water.value);
+    let share = purity * (1.0 - moisture);
     let is_liquid = substance.form.as_deref() == Some("liquid");
-    let mut per_kg = Mixture { water_kg: water, ..Mixture::default() };
-    let mut water_kg = water;
-    let inert_kg = (1.0 - water) * (1.0 - purity);
+    let mut per_kg = Mixture { water_kg: moisture, ..Mixture::default() };
+    let mut water_kg = moisture;
+    let inert_kg = (1.0 - moisture) * (1.0 - purity);
     per_kg.inert_mass_kg = inert_kg;
     per_kg.inert_volume_L = inert_kg * INERT_LITRES_PER_KG;
     let inert = substance.inert || substance.molar_mass.is_none();
@@ -199,6 +200,12 @@ fn pure(
         solute = Some((found.definition.key.clone(), share / molar_mass, share));
     }
     let water_itself = is_water(substance);
+    // A volume is measured where the solution is made, and what water weighs there is known.
+    let density = match (water_itself, is_liquid) {
+        (true, _) => Some(water::density_kg_per_m3(temperature_K)),
+        (false, true) => substance.density,
+        (false, false) => None,
+    };
     let solutes = if water_itself {
         Vec::new()
     } else {
@@ -212,7 +219,7 @@ fn pure(
     Ok(Goods {
         name: reference.text.clone(),
         definition: found.definition.key.clone(),
-        density: if is_liquid || water_itself { substance.density } else { None },
+        density,
         per_kg,
         water_kg,
         solute,

@@ -79,5 +79,11 @@ class Systems(unittest.TestCase):
         self.assertGreaterEqual(len(names), 20)
 
 
+    def test_water_is_measured_at_its_temperature(self):
+        command = [PROGRAM, "show", str(HERE / "systems.prep"), "--solution", "Water alone", "--format", "json"]
+        printed = json.loads(subprocess.run(command, capture_output=True, text=True, check=False).stdout)
+        self.assertAlmostEqual(printed[0]["ingredients"][0]["volume_mL"], 1e6 / water.density(298.15), delta=1e-3)
+
+
 if __name__ == "__main__":
     unittest.main()
