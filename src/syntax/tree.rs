@@ -40,6 +40,7 @@ pub struct Line {
 }
 
 /// What a line says.
+#[allow(clippy::large_enum_variant, reason = "nearly every line is a statement")]
 #[derive(Clone, Debug, PartialEq)]
 pub enum Content {
     /// Nothing, or a comment.

@@ -176,6 +176,7 @@ impl<'t> Builder<'t> {
 }
 
 /// What stands between two commas of a line of ware.
+#[allow(clippy::large_enum_variant, reason = "it lives for one step of a loop")]
 enum Piece {
     Ware(Ware),
     ClassA,
