@@ -6,7 +6,7 @@ use scruple::syntax::tree::*;
 use scruple::text::Span;
 
 /// Of the lines, so many must be read as meant.
-const AS_MEANT: usize = 270;
+const AS_MEANT: usize = 278;
 
 /// Lines of which the language has since been given a reading, with the fields that it now has.
 const LAWFUL_NOW: [(&str, &str); 22] = [

@@ -185,15 +185,14 @@ fn thing_start(strength: &Option<Slot<Strength>>, name: &Slot<Name>) -> Option<u
 
 /// Where the words of a statement end.
 fn words_end(line: &Line, tokens: &[Token]) -> usize {
-    let spoken = |count: usize| -> String {
-        let words: Vec<&str> = tokens.iter().take(count).map(|token| token.span.of(&line.text)).collect();
-        words.join(" ").to_lowercase()
+    let spoken = || tokens.iter().map(|token| token.span.of(&line.text));
+    let said = |words: &str| {
+        let count = words.split(' ').count();
+        let all = tokens.len() >= count && words.split(' ').zip(spoken()).all(|(word, written)| word.eq_ignore_ascii_case(written));
+        all.then_some(count)
     };
-    let known = || FIRST_WORDS.iter().chain(&MORE_FIRST_WORDS);
-    let count = (2..=4)
-        .rev()
-        .find(|count| tokens.len() >= *count && known().any(|words| words.to_lowercase() == spoken(*count)))
-        .unwrap_or(1);
+    let known = FIRST_WORDS.iter().chain(&MORE_FIRST_WORDS).filter(|words| words.contains(' '));
+    let count = known.filter_map(|words| said(words)).max().unwrap_or(1);
     tokens.get(count - 1).map_or(0, |token| token.span.end)
 }
 

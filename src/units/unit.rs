@@ -1,6 +1,9 @@
 //! A unit: how it is written, what it measures, and the way to and from the base unit of its dimension.
 
-use super::table::{Row, ROWS};
+use std::collections::HashMap;
+use std::sync::LazyLock;
+
+use super::table::{ROWS, Row};
 
 /// What a unit measures. The base unit, in which the program calculates, stands beside each.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash, PartialOrd, Ord)]
@@ -91,6 +94,27 @@ impl Dimension {
 #[derive(Clone, Copy, Debug)]
 pub struct Unit(&'static Row);
 
+/// Every spelling of every unit, without white space and with the micro sign for mu.
+static SPELLINGS: LazyLock<HashMap<String, Unit>> = LazyLock::new(|| {
+    let mut spellings = HashMap::new();
+    for row in &ROWS {
+        for written in std::iter::once(row.symbol).chain(row.spellings.iter().copied()) {
+            let written = plain(written);
+            // An ASCII `u` for µ, as keyboards without the sign force it.
+            if let Some(rest) = written.strip_prefix('µ') {
+                spellings.insert(format!("u{rest}"), Unit(row));
+            }
+            spellings.insert(written, Unit(row));
+        }
+    }
+    spellings
+});
+
+/// A spelling without white space, the Greek mu made the micro sign.
+fn plain(spelling: &str) -> String {
+    spelling.chars().filter(|letter| !letter.is_whitespace()).map(|letter| if letter == 'μ' { 'µ' } else { letter }).collect()
+}
+
 impl PartialEq for Unit {
     fn eq(&self, other: &Self) -> bool {
         std::ptr::eq(self.0, other.0)
@@ -115,25 +139,11 @@ impl Unit {
     /// The unit of this spelling, written exactly so: case matters, white space inside `% w/v` and the three ways to
     /// write µ do not.
     pub fn parse(spelling: &str) -> Option<Unit> {
-        let plain: String = spelling
-            .chars()
-            .filter(|letter| !letter.is_whitespace())
-            .map(|letter| if letter == 'μ' { 'µ' } else { letter })
-            .collect();
-        let same = |written: &str| written.chars().filter(|letter| *letter != ' ').eq(plain.chars());
-        ROWS.iter()
-            .find(|row| {
-                same(row.symbol)
-                    || row.spellings.iter().any(|written| same(written))
-                    // An ASCII `u` for µ, as keyboards without the sign force it.
-                    || row.symbol.starts_with('µ') && plain.strip_prefix('u').is_some_and(|rest| {
-                        let after = |written: &str| {
-                            written.strip_prefix('µ').is_some_and(|tail| tail == rest)
-                        };
-                        after(row.symbol) || row.spellings.iter().any(|written| after(written))
-                    })
-            })
-            .map(Unit)
+        let found = SPELLINGS.get(spelling);
+        if found.is_some() || !spelling.contains(|letter: char| letter == 'μ' || letter.is_whitespace()) {
+            return found.copied();
+        }
+        SPELLINGS.get(plain(spelling).as_str()).copied()
     }
 
     /// Every unit, in the order of the table.

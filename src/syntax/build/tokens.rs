@@ -43,7 +43,9 @@ impl Builder<'_> {
     /// Asks for the written form of a keyword.
     pub(super) fn written_form(&mut self, place: Span) {
         let word = self.of(place);
-        if word.contains(is_invisible) {
+        let plain = |word: &str| word.bytes().all(|letter| letter.is_ascii_lowercase()) && !matches!(word, "standardize");
+        let is_written = CAPITALS.contains(&word) || plain(word) && !CAPITALS.iter().any(|capital| capital.eq_ignore_ascii_case(word));
+        if is_written || word.contains(is_invisible) {
             return;
         }
         let lower = word.to_lowercase();
