@@ -4,6 +4,7 @@
 mod check;
 mod completions;
 mod explain;
+mod format;
 mod lookup;
 mod paths;
 mod progress;
@@ -39,6 +40,7 @@ struct Arguments {
 enum Verb {
     Check(check::Check),
     Show(show::Show),
+    Format(format::Format),
     Lookup(lookup::Lookup),
     Explain(explain::Explain),
     Serve(serve::Serve),
@@ -88,6 +90,7 @@ pub fn run(server: impl FnOnce(Option<&Path>) -> io::Result<i32>) -> i32 {
     let ended = match arguments.verb {
         Verb::Check(check) => check.run(&terminal),
         Verb::Show(show) => show.run(&terminal),
+        Verb::Format(format) => format.run(&terminal),
         Verb::Lookup(lookup) => lookup.run(&terminal),
         Verb::Explain(explain) => explain.run(&terminal),
         Verb::Serve(serve) => serve.run(server),
