@@ -1,6 +1,7 @@
 //! Bottles: what a kilogram of what stands on the shelf holds, from its label.
 
-use super::goods::{INERT_LITRES_PER_KG, mass_fraction, table_density, volume_of};
+use super::goods::{INERT_LITRES_PER_KG, volume_of};
+use super::strength::{mass_fraction, table_density};
 use super::names::ingredient;
 use super::{Context, Outcome, Refusal, Solute};
 use crate::chemistry::Mixture;

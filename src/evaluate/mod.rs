@@ -10,11 +10,13 @@ mod outcome;
 mod plan;
 mod property;
 mod refusal;
+mod strength;
 mod verdicts;
 
 use std::sync::Arc;
 
-pub use goods::{Goods, Stock, table_density};
+pub use goods::{Goods, Stock};
+pub use strength::table_density;
 pub use names::{Found, comes_in_strengths, is_plain_stock_of, listed, meaning, place_of, written_form};
 pub use outcome::*;
 pub use property::{PropertyValue, as_formula_factor, key_element, property_value};
