@@ -1,53 +1,55 @@
 //! The formatter's edits, as few and small as they can be.
 
+use crate::syntax;
 use crate::text::{FileId, Span};
-use crate::workspace::{FileState, Origin, Snapshot};
+use crate::workspace::{Origin, Snapshot};
 
-/// The replacements that lay a file out as the formatter would; nothing for a file that cannot be read or changed.
+/// The replacements that lay a file out as the formatter would, one for each line that changes, in order; nothing for a
+/// file that cannot be read or changed.
 pub fn formatting(snapshot: &Snapshot, file: FileId) -> Option<Vec<(Span, String)>> {
     let state = snapshot.file(file)?;
     if matches!(state.origin, Origin::Unreadable(_) | Origin::BuiltIn) {
         return None;
     }
-    let before = state.source.as_str();
-    let after = laid_out(state)?;
-    Some(line_edits(before, &after))
+    let ending = if state.source.as_str().contains("\r\n") { "\r\n" } else { "\n" };
+    let edits = state.tree.lines.iter().filter_map(|placed| {
+        let laid_out = syntax::format_line(&placed.line, ending);
+        (laid_out != placed.line.text).then(|| difference(placed.start, &placed.line.text, &laid_out))
+    });
+    Some(edits.collect())
 }
 
-/// The text as the formatter lays it out.
-fn laid_out(_state: &FileState) -> Option<String> {
-    None
+/// The replacement that turns one text into another, without the characters that both begin or end with.
+fn difference(start: usize, before: &str, after: &str) -> (Span, String) {
+    let shared = |one: &mut dyn Iterator<Item = char>, other: &mut dyn Iterator<Item = char>| -> usize {
+        one.zip(other).take_while(|(one, other)| one == other).map(|(one, _)| one.len_utf8()).sum()
+    };
+    let head = shared(&mut before.chars(), &mut after.chars());
+    let (before_rest, after_rest) = (before.get(head..).unwrap_or_default(), after.get(head..).unwrap_or_default());
+    let tail = shared(&mut before_rest.chars().rev(), &mut after_rest.chars().rev());
+    let new = after_rest.get(..after_rest.len() - tail).unwrap_or_default();
+    (Span::new(start + head, start + before.len() - tail), new.to_owned())
 }
 
-/// The lines that differ between two texts, as replacements. Runs of changed lines become one edit each; texts with
-/// different numbers of lines are compared from both ends.
-fn line_edits(before: &str, after: &str) -> Vec<(Span, String)> {
-    let old: Vec<&str> = before.split_inclusive('\n').collect();
-    let new: Vec<&str> = after.split_inclusive('\n').collect();
-    let mut edits = Vec::new();
-    if old.len() == new.len() {
-        let mut start = 0;
-        for (one, other) in old.iter().zip(&new) {
-            if one != other {
-                edits.push(shrink(start, one, other));
-            }
-            start += one.len();
-        }
-        return edits;
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::editor::fixture::{applied, fixture};
+
+    #[test]
+    fn only_lines_that_change_are_replaced() {
+        let fixture = fixture("solution A\n  1 g   water\n    1 g        water\n    q.s.   water   to 1 L # to the mark\n");
+        let edits = formatting(&fixture.snapshot, fixture.file).unwrap();
+        assert_eq!(edits.len(), 2, "{edits:?}");
+        assert!(edits.iter().all(|(span, text)| span.len() < 12 && text.len() < 12), "{edits:?}");
+        let text = applied(&fixture.text, edits);
+        assert_eq!(text, syntax::format(&fixture.text));
     }
-    if before != after {
-        edits.push(shrink(0, before, after));
-    }
-    edits
-}
 
-/// A replacement without the characters that both texts begin or end with.
-fn shrink(start: usize, one: &str, other: &str) -> (Span, String) {
-    let same_start: usize =
-        one.chars().zip(other.chars()).take_while(|(a, b)| a == b).map(|(a, _)| a.len_utf8()).sum();
-    let (one_rest, other_rest) = (one.get(same_start..).unwrap_or(one), other.get(same_start..).unwrap_or(other));
-    let same_end: usize =
-        one_rest.chars().rev().zip(other_rest.chars().rev()).take_while(|(a, b)| a == b).map(|(a, _)| a.len_utf8()).sum();
-    let span = Span::new(start + same_start, start + one.len() - same_end);
-    (span, other_rest.get(..other_rest.len() - same_end).unwrap_or_default().to_owned())
+    #[test]
+    fn the_built_in_library_is_not_changed() {
+        let fixture = fixture("");
+        let library = fixture.snapshot.library_files().next().unwrap().id;
+        assert_eq!(formatting(&fixture.snapshot, library), None);
+    }
 }
