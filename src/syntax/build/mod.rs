@@ -15,9 +15,7 @@ mod targets;
 mod texts;
 mod tokens;
 
-use pest::Parser;
-
-use super::grammar::{LineParser, Rule};
+use super::grammar::{Rule, parse_line};
 use super::scanner::is_space;
 use super::tree::*;
 use crate::text::Span;
@@ -61,23 +59,21 @@ impl<'t> Builder<'t> {
 
     fn content(&mut self, first: bool) -> Content {
         if self.text.len() > LONGEST_LINE {
-            let whole = Span::new(0, self.text.trim_end_matches(['\r', '\n']).len());
-            self.token(TokenKind::Bad, whole);
-            self.fault(whole, FaultKind::TooLong);
-            return Content::Junk(whole);
+            return self.too_long();
         }
-        let content = match LineParser::parse(Rule::line, self.text) {
-            Ok(mut pairs) => match pairs.next() {
-                Some(line) => self.parsed(line),
-                None => Content::Blank,
-            },
-            // The grammar accepts every text; should it not, the line is junk rather than lost.
-            Err(_) => self.junk(Span::new(0, self.text.trim_end_matches(['\r', '\n']).len())),
-        };
+        let Some(parsed) = parse_line(self.text) else { return self.too_long() };
+        let content = self.parsed(parsed);
         self.check_characters(first);
         self.fill_tokens();
         self.faults.sort_by_key(|fault| (fault.span.start, fault.span.end));
         content
+    }
+
+    fn too_long(&mut self) -> Content {
+        let whole = Span::new(0, self.text.trim_end_matches(['\r', '\n']).len());
+        self.token(TokenKind::Bad, whole);
+        self.fault(whole, FaultKind::TooLong);
+        Content::Junk(whole)
     }
 
     fn parsed(&mut self, line: Node<'t>) -> Content {

@@ -388,8 +388,8 @@ impl<'t> Builder<'t> {
         if first.starts_with(|digit: char| digit.is_ascii_digit()) && written.ends_with('%') {
             readings.push(reading(place, format!("purity {written}"), ""));
         }
-        // The comma may belong to the name.
-        let name = self.tokens.iter().rev().find(|token| token.kind == TokenKind::Name && token.span.end <= place.start);
+        // The comma may belong to the name that stands just before.
+        let name = self.tokens.iter().rev().nth(1).filter(|token| token.kind == TokenKind::Name && token.span.end <= place.start);
         if let Some(whole) = name.map(|name| name.span.to(place)).filter(|whole| !self.of(*whole).contains(['\n', '\r', '"'])) {
             readings.push(reading(whole, super::names::quoted(self.of(whole)), "one name"));
         }
