@@ -73,7 +73,11 @@ fn a_clean_recipe_passes_and_a_failing_one_does_not() {
 fn the_failing_level_decides() {
     let folder = scratch("level");
     // Nothing states the temperature: a hint.
-    fs::write(folder.join("hint.prep"), "solution Salt\n    9 g        sodium chloride\n    q.s.       water to 1 L\n").unwrap();
+    let recipe = "solution Buffer
+    20 mmol/L  potassium dihydrogen phosphate / dipotassium hydrogen phosphate to pH 7.00
+    q.s.       water to 1 L
+";
+    fs::write(folder.join("hint.prep"), recipe).unwrap();
     assert_eq!(code(&run(&folder, &["check", "--fail-on", "warning", "hint.prep"])), 0);
     assert_eq!(code(&run(&folder, &["check", "--fail-on", "hint", "hint.prep"])), 1);
     fs::write(folder.join("scruple.toml"), "[findings]\ntemperature-assumed = \"error\"\n").unwrap();
