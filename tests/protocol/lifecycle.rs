@@ -54,7 +54,7 @@ fn broken_messages_do_not_end_the_conversation() {
     client.raw(b"rubbish\r\n\r\nmore");
     assert_eq!(client.wait(|message| message["id"].is_null())["error"]["code"], -32700);
     assert_eq!(client.ask("no/such/method", json!({}))["error"]["code"], -32601);
-    assert_eq!(client.ask("textDocument/hover", json!({ "wrong": 1 }))["error"]["code"].is_i64(), true);
+    assert_eq!(client.ask("textDocument/hover", json!({ "wrong": 1 }))["error"]["code"], -32602);
     client.tell("textDocument/didOpen", json!([1, 2]));
     client.tell("$/progress", json!({}));
     client.send(&json!({ "jsonrpc": "2.0", "id": 4711, "result": null }));
