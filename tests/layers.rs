@@ -93,7 +93,7 @@ fn code(name: &str, text: &str) -> String {
     let mut last = ' ';
     for character in uncommented.join("\n").chars() {
         // A quotation mark as a character literal opens nothing.
-        if character == '"' && last != '\\' && !(last == '\'' && !in_string) {
+        if character == '"' && last != '\\' && (last != '\'' || in_string) {
             in_string = !in_string;
         }
         if !in_string {

@@ -310,7 +310,7 @@ mod tests {
     fn units_follow_a_number() {
         let all = labels("solution A\n    50 ‸");
         assert!(["g", "mg", "mL", "mmol/L"].iter().all(|unit| all.contains(&unit.to_string())), "{all:?}");
-        begins("solution A\n    50 mm‸", &["mmol/L", "mmol"].as_slice().get(..0).unwrap());
+        begins("solution A\n    50 mm‸", ["mmol/L", "mmol"].as_slice().get(..0).unwrap());
         assert!(labels("solution A\n    50 mm‸").contains(&"mmol/L".to_owned()));
         begins("solution A\n    made at    25 ‸", &["°C", "K"]);
         assert_eq!(inserted("solution A\n    50 mmo‸  Tris", "mmol/L"), "    50 mmol/L  Tris");
@@ -321,14 +321,14 @@ mod tests {
         begins("solution A\n    q.s.       water ‸", &["to", "or"]);
         assert!(labels("solution A\n    q.s.       water to ‸").starts_with(&["pH".to_owned(), "ionic strength".to_owned()]));
         assert!(labels("solution A\n    q.s.       water to ‸").contains(&"1 L".to_owned()));
-        begins("solution A\n    q.s.       water to 1 ‸", &["L", "mL"].as_slice().get(..1).unwrap());
+        begins("solution A\n    q.s.       water to 1 ‸", ["L", "mL"].as_slice().get(..1).unwrap());
     }
 
     #[test]
     fn expectations_name_properties_and_constituents() {
         begins("solution A\n    expect     ‸", &["pH", "ionic strength", "buffer capacity"]);
         begins("solution A\n    expect     buf‸", &["buffer capacity"]);
-        begins("solution A\n    made at    25 °C\n    1 g        sodium acetate\n    q.s.       water to 1 L\n    expect     total ‸", &["acetate", "sodium"].as_slice().get(..1).unwrap());
+        begins("solution A\n    made at    25 °C\n    1 g        sodium acetate\n    q.s.       water to 1 L\n    expect     total ‸", ["acetate", "sodium"].as_slice().get(..1).unwrap());
         assert!(labels("solution A\n    q.s.       water to 1 L\n    expect     pH ‸").contains(&"at least".to_owned()));
     }
 

@@ -32,7 +32,7 @@ pub fn folding_ranges(snapshot: &Snapshot, file: FileId) -> Vec<FoldingRange> {
         .filter(|index| state.model.blocks.get(*index).is_some_and(|block| block.kind().is_some()))
         .map(|index| FoldingRange { span: block_span(state, index), kind: FoldingKind::Block })
         .collect();
-    ranges.extend(runs(state, FoldingKind::Comment, |state, line| is_comment(state, line)));
+    ranges.extend(runs(state, FoldingKind::Comment, is_comment));
     ranges.extend(runs(state, FoldingKind::Uses, |state, line| {
         state.tree.lines.get(line).is_some_and(|placed| {
             matches!(placed.line.content, Content::Statement(crate::syntax::tree::Statement::Use(_)))

@@ -164,7 +164,7 @@ impl<'a> Hints<'a, '_> {
             definition_of(self.snapshot, &line.definition)
                 .is_some_and(|definition| matches!(&definition.block.body, Body::Substance(substance) if is_water(substance)))
         };
-        if addition.about || lines.iter().all(|line| is_water(line)) {
+        if addition.about || lines.iter().all(is_water) {
             return;
         }
         let concentrations: Option<Vec<String>> =

@@ -658,9 +658,9 @@ impl Bench<'_, '_> {
                 }
                 Work::Adjust { goods, .. } | Work::ByEye { goods, .. } => take(line, goods, masses[0], Role::Adjusts),
                 Work::SetPh { titrants, .. } => {
-                    let which = if masses[1] > 0.0 { 1 } else { 0 };
-                    if let Some(titrant) = titrants.get(which) {
-                        take(line, titrant, masses[which], Role::Adjusts);
+                    let which = usize::from(masses[1] > 0.0);
+                    if let (Some(titrant), Some(mass)) = (titrants.get(which), masses.get(which)) {
+                        take(line, titrant, *mass, Role::Adjusts);
                     }
                 }
                 Work::Divider => {}

@@ -85,7 +85,10 @@ pub async fn serve<S: LanguageServer>(
     let (requests, mut answers) = socket.split();
     tokio::spawn(requests.for_each({
         let outbox = outbox.clone();
-        move |request| future::ready(outbox.send(&request))
+        move |request| {
+            let _: () = outbox.send(&request);
+            future::ready(())
+        }
     }));
 
     let mut under_way = JoinSet::new();

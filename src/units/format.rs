@@ -174,6 +174,20 @@ pub fn percent(fraction: f64, digits: usize) -> String {
     format!("{} %", significant(fraction * 100.0, digits))
 }
 
+/// A number as short as it can be written without losing more than its tenth digit: `0.05`, `12`, `7.4`.
+pub fn plain(value: f64) -> String {
+    let text = format!("{value:.9e}").parse::<f64>().unwrap_or(value).to_string();
+    if text.len() > 14 { significant(value, 4) } else { text }
+}
+
+/// A value in the base unit with the unit that it was written in, or bare (pH) where there is none.
+pub fn with_unit(base: f64, unit: Option<Unit>) -> String {
+    match unit {
+        Some(unit) => format!("{} {}", significant(unit.from_base(base), 4), unit.symbol()),
+        None => ph(base),
+    }
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;
@@ -213,19 +227,5 @@ mod tests {
     fn an_uncertainty_decides_the_decimals() {
         assert_eq!(with_uncertainty(7.198_34, 0.003), ("7.1983".to_owned(), "0.0030".to_owned()));
         assert_eq!(with_uncertainty(150.24, 12.0), ("150".to_owned(), "12".to_owned()));
-    }
-}
-
-/// A number as short as it can be written without losing more than its tenth digit: `0.05`, `12`, `7.4`.
-pub fn plain(value: f64) -> String {
-    let text = format!("{value:.9e}").parse::<f64>().unwrap_or(value).to_string();
-    if text.len() > 14 { significant(value, 4) } else { text }
-}
-
-/// A value in the base unit with the unit that it was written in, or bare (pH) where there is none.
-pub fn with_unit(base: f64, unit: Option<Unit>) -> String {
-    match unit {
-        Some(unit) => format!("{} {}", significant(unit.from_base(base), 4), unit.symbol()),
-        None => ph(base),
     }
 }

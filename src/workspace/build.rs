@@ -595,7 +595,8 @@ fn check_cycle(snapshot: &Snapshot, nodes: &[Node], cycle: &[usize], member: usi
     };
     let mut findings: Vec<Finding> = block.findings.clone();
     let path = cycle_path(nodes, cycle, member);
-    for (_, at, text) in node.leads.iter().filter(|(needed, ..)| path.get(1) == Some(needed) || path.len() == 1 && *needed == member) {
+    let leads_round = |needed: usize| path.get(1) == Some(&needed) || path.len() == 1 && needed == member;
+    if let Some((_, at, text)) = node.leads.iter().find(|(needed, ..)| leads_round(*needed)) {
         let names: Vec<String> = path.iter().chain(std::iter::once(&member)).map(name_of).collect();
         let mut finding = Finding::new(
             Code::Cycle,
@@ -610,7 +611,6 @@ fn check_cycle(snapshot: &Snapshot, nodes: &[Node], cycle: &[usize], member: usi
             }
         }
         findings.push(finding);
-        break;
     }
     let name = name_of(&member);
     let members = vec![evaluate::Member { name, outcome: None }];

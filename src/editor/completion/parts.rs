@@ -299,14 +299,10 @@ pub fn paths(items: &mut Items, cursor: &Cursor, span: Span) {
 
 /// The path of a file from a folder, with forward slashes.
 fn relative(folder: &camino::Utf8Path, file: &camino::Utf8Path) -> Option<String> {
-    let mut up = 0;
-    for ancestor in folder.ancestors() {
-        if let Ok(rest) = file.strip_prefix(ancestor) {
-            return Some(format!("{}{}", "../".repeat(up), rest.as_str().replace('\\', "/")));
-        }
-        up += 1;
-    }
-    None
+    folder.ancestors().enumerate().find_map(|(up, ancestor)| {
+        let rest = file.strip_prefix(ancestor).ok()?;
+        Some(format!("{}{}", "../".repeat(up), rest.as_str().replace('\\', "/")))
+    })
 }
 
 /// What can stand above the liquid.

@@ -350,7 +350,7 @@ bottle Spirit
         holds("because", &["because\n"]);
         holds("accept", &["accept\n"]);
         holds("temperature-sh", &["[temperature-shift]", "temperature-shift – warning", "scruple explain temperature-shift"]);
-        holds("expect     total", &["expect total chloride", "total\n"].as_slice().get(..1).unwrap());
+        holds("expect     total", ["expect total chloride", "total\n"].as_slice().get(..1).unwrap());
     }
 
     #[test]

@@ -63,7 +63,7 @@ fn one(outcome: &Outcome, in_full: bool, page: &mut Page) {
     let assumed = if outcome.made_at_half_width_K > 0.0 { " (middle of the room's range)" } else { "" };
     page.row("pH", format!("{} at {}{assumed}", shown_ph(state), format::temperature(outcome.made_at_K)));
     for (kelvin, used) in outcome.uses.iter().filter(|(kelvin, _)| (kelvin - outcome.made_at_K).abs() > 0.05).take(4) {
-        let value = used.as_ref().map_or_else(|failure| format!("none: {failure}"), |state| shown_ph(state));
+        let value = used.as_ref().map_or_else(|failure| format!("none: {failure}"), shown_ph);
         page.row("", format!("{value} at {} (use)", format::temperature(*kelvin)));
     }
     for point in &outcome.set_points {

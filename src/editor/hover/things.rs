@@ -111,7 +111,7 @@ pub fn pka_of(snapshot: &Snapshot, from: FileId, substance: &Substance) -> Optio
         for definition in find(snapshot, from, Namespace::Constituent, &what.key, &what.text, true) {
             if let Body::Ion(ion) = &definition.block.body {
                 values.extend(ion.pka.iter().map(|constant| {
-                    value_at(constant, SHOWN_AT_K).map_or_else(String::new, |value| format::ph(value))
+                    value_at(constant, SHOWN_AT_K).map_or_else(String::new, format::ph)
                 }));
             }
         }

@@ -29,7 +29,7 @@ fn visible(line: &Line, fault: &Fault) -> crate::text::Span {
     let before = |token: &&crate::syntax::tree::Token| {
         !token.span.is_empty() && token.kind != TokenKind::Comment && token.span.end <= fault.span.start
     };
-    line.tokens.iter().filter(before).last().map_or(statement_span(line), |token| token.span)
+    line.tokens.iter().rfind(before).map_or(statement_span(line), |token| token.span)
 }
 
 /// Characters that cannot be seen are named by their code point.
