@@ -31,6 +31,7 @@ pub(super) fn quantity_in_step(case: &Case, findings: &mut Vec<Finding>) {
             if rest.first().is_some_and(|(word, _)| *word == "of") {
                 rest = rest.get(1..).unwrap_or_default();
             }
+            rest = after_strength(rest);
             let Some((name, length)) = longest_name(case, rest) else { continue };
             let end = rest.get(length - 1).map_or(at + number.len(), |(word, start)| start + word.len());
             let span = Span::new(step.at.span.start + at, step.at.span.start + end);
@@ -73,6 +74,16 @@ fn words(text: &str) -> Vec<(&str, usize)> {
         }
     }
     words
+}
+
+/// The words after a strength such as `37 % w/w`, where one stands first.
+fn after_strength<'a>(words: &'a [(&'a str, usize)]) -> &'a [(&'a str, usize)] {
+    let Some(((number, _), rest)) = words.split_first() else { return words };
+    let unit = |count: usize| {
+        let unit: Vec<&str> = rest.get(..count)?.iter().map(|(word, _)| *word).collect();
+        Unit::parse(&unit.join(" ")).filter(|unit| unit.dimension().is_strength()).and_then(|_| rest.get(count..))
+    };
+    if number.parse::<f64>().is_err() { words } else { unit(2).or_else(|| unit(1)).unwrap_or(words) }
 }
 
 /// The longest run of words that is a name in scope.

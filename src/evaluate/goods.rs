@@ -7,7 +7,9 @@ use super::strength::{mass_fraction, table_density};
 use super::{Context, Outcome, Refusal, Solute, ingredient_has_no_value};
 use crate::chemistry::{Mixture, State, water};
 use crate::finding::{Code, Finding};
-use crate::model::{Amount, DefinitionKey, Qualifiers, Reference, StrengthKind, Substance, is_water};
+use crate::model::{
+    Amount, DefinitionKey, Lookup, NameKey, Namespace, Qualifiers, Reference, StrengthKind, Substance, is_water,
+};
 use crate::syntax::tree::BlockKind;
 use crate::units::Dimension;
 
@@ -107,7 +109,11 @@ pub fn goods(
             StrengthKind::Concentration(amount) => {
                 let is_it = |outcome: &Outcome| has_strength(outcome, &amount);
                 match names::stocks_of_strength(reference, found, is_it, context).as_slice() {
-                    [] => {}
+                    [] => {
+                        if let Some(finding) = named_like_a_strength(reference, &amount, context) {
+                            return Err(finding.into());
+                        }
+                    }
                     [one] => return stock(reference, &Found { definition: one }, temperature_K, context),
                     several => return Err(which_bottle(reference, several).into()),
                 }
@@ -141,6 +147,23 @@ pub fn goods(
         Some(density) => Goods { density: Some(density), ..goods },
         None => goods,
     })
+}
+
+/// Says that the strength and the name together are what something in scope is called, though it holds another strength.
+fn named_like_a_strength(reference: &Reference, amount: &Amount, context: &Context) -> Option<Finding> {
+    // Twelve digits, so that the way to the base unit and back does not show.
+    let value: f64 = format!("{:.11e}", amount.unit.from_base(amount.value)).parse().ok()?;
+    let names = amount.unit.spellings().iter().map(|unit| format!("{value} {unit} {}", reference.text));
+    let found = names.into_iter().find_map(|name| match context.scope.find(Namespace::Ingredient, &NameKey::new(&name), &name) {
+        Lookup::One(definition) => Some(definition.clone()),
+        Lookup::Nothing | Lookup::Several(_) => None,
+    })?;
+    let message = format!("{} is the name of something that does not hold just that strength.", found.name());
+    Some(
+        Finding::new(Code::StrengthOrName, reference.at, message)
+            .help(format!("Write \"{}\" in quotes if it is meant, or give it another name.", found.name()))
+            .related_at(names::place_of(&found), "defined here"),
+    )
 }
 
 /// What a mole of a substance brings, or the finding that says why it is not known.
