@@ -9,7 +9,7 @@ use scruple::syntax::{format, parse, parse_reusing};
 /// A file of some 400 different lines: the demonstration library, each copy with its own names.
 fn library() -> String {
     let one = include_str!("../fixtures/library.prep");
-    (0..6).map(|copy| one.replace("solution ", &format!("solution {copy} of ").replace(" of ", "-")).replace(" mL", &format!("{copy}.5 mL"))).collect()
+    (0..6).map(|copy| one.replace("solution ", &format!("solution {copy}-")).replace(" mL", &format!("{copy}.5 mL"))).collect()
 }
 
 fn benches(criterion: &mut Criterion) {
