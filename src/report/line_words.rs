@@ -72,7 +72,11 @@ pub fn name_taken(subject: &Subject, line: &LineOutcome) -> String {
             }
         }
         Action::Pair(pair) => {
-            with_strength(subject, line, if pair.second.text == line.name { &pair.second } else { &pair.first })
+            let name = with_strength(subject, line, if pair.second.text == line.name { &pair.second } else { &pair.first });
+            match pair.goals.get(subject.member_index).or(pair.goals.last()) {
+                Some(goal) => format!("{name} (both to {})", goal_words(subject, line, goal)),
+                None => name,
+            }
         }
         _ => line.name.clone(),
     }
