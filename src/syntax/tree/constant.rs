@@ -1,6 +1,5 @@
 //! What a substance or an ion is known by: counts, constants, densities.
 
-use super::expectation::Range;
 use super::part::{Name, Number, Quantity, Slot, TemperatureRange, Text, Tolerance};
 use crate::text::Span;
 use crate::units::Unit;

@@ -1,6 +1,5 @@
 //! Properties, ranges and targets; what must hold, what was found, what was judged.
 
-use super::constant::Density;
 use super::part::{FormulaText, Name, Number, Quantity, Slot, Text, Tolerance};
 use crate::text::Span;
 use crate::units::Unit;

@@ -1,8 +1,5 @@
 //! What is wrong with the writing of a line, and what may have been meant.
 
-use super::expectation::{Property, Range, Target};
-use super::part::{Number, Quantity, Text};
-use super::solution::{Gas, Qualifier};
 use crate::text::Span;
 
 /// What belongs into a gap.

@@ -1,6 +1,5 @@
 //! The parts of which statements are made: slots, names, texts, numbers, quantities.
 
-use super::constant::Given;
 use crate::text::Span;
 use crate::units::Unit;
 

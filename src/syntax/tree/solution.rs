@@ -1,7 +1,6 @@
 //! What goes into a solution, and how it is made, used and kept.
 
-use super::constant::Density;
-use super::expectation::{Range, Target};
+use super::expectation::Target;
 use super::part::{FormulaText, Name, Number, Quantity, Slot, Text, Tolerance};
 use crate::text::Span;
 

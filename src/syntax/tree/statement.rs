@@ -2,7 +2,7 @@
 
 use super::constant::{Aqueous, Complex, Constant, Density, Given, Measured, Partnered, Solubility};
 use super::expectation::{Accept, Expect, Found};
-use super::lab::{Balance, Meter, Ware, WareLine};
+use super::lab::{Balance, Meter, WareLine};
 use super::part::{FormulaText, Name, Number, Quantity, Slot, TemperatureRange, Text};
 use super::solution::{Document, Gas, Ingredient, Pair, QuantumSatis, StoredAt, UsedAt};
 use crate::text::Span;
