@@ -52,8 +52,6 @@ const LONG: usize = 500;
 /// The files that are longer, and why they stay whole.
 const LONG_FOR_A_REASON: &[(&str, &str)] = &[
     ("src/workspace/build.rs", "one walk from files to findings, whose steps share what did not change"),
-    ("src/evaluate/plan.rs", "one pass over the kinds of line, each of which becomes one kind of work"),
-    ("src/evaluate/bench.rs", "one beaker: the unknowns of its lines are solved together"),
 ];
 
 fn root() -> &'static Path {

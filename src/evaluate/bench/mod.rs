@@ -1,0 +1,278 @@
+//! The bench: what the beaker holds line by line, with everything that the recipe leaves to be worked out.
+
+mod finished;
+mod outcome;
+mod ph;
+mod refusals;
+mod volume;
+
+use super::found;
+use super::goods::{Goods, state_of};
+use super::plan::{Dose, Extent, Finals, Planned, Work, plan};
+use super::property::property_value;
+use super::verdicts::verdicts;
+use super::{Context, Outcome, Refusal, SetPoint};
+use crate::chemistry::targets::{TargetFailure, find_root};
+use crate::chemistry::{Mixture, State};
+use crate::finding::{Anchor, Code, Finding};
+use crate::model::{Action, Block, Goal, GoalKind, Property, Recipe};
+pub(super) use volume::diluted;
+
+/// Rounds of settling how much is made; each closes in by a factor of ten or more.
+const MAX_ROUNDS: usize = 80;
+
+/// A pH is met when it is as near as this.
+const PH_TOLERANCE: f64 = 1e-9;
+
+/// How much more than the beaker holds is tried before a target counts as out of reach.
+const MOST_TITRANT: f64 = 200.0;
+
+/// The beaker after some lines.
+#[derive(Clone, Debug, Default)]
+struct Beaker {
+    mixture: Mixture,
+    kilograms: f64,
+    water_kg: f64,
+}
+
+impl Beaker {
+    fn add(&mut self, goods: &Goods, mass_kg: f64) {
+        self.mixture.add(&goods.per_kg, mass_kg);
+        self.kilograms += mass_kg;
+        self.water_kg += mass_kg * goods.water_kg;
+    }
+}
+
+/// What a run through the lines gave.
+#[derive(Clone, Debug, Default)]
+struct Run {
+    beaker: Beaker,
+    /// Masses taken, for each planned line: one, or two of a pair; which titrant, for two.
+    masses: Vec<[f64; 2]>,
+    set_points: Vec<SetPoint>,
+    parts: Vec<(usize, Beaker)>,
+    finals: Vec<Finals>,
+}
+
+/// Evaluates a solution.
+pub(super) fn evaluate(
+    block: &Block,
+    recipe: &Recipe,
+    index: usize,
+    context: &Context,
+    findings: &mut Vec<Finding>,
+) -> Result<Outcome, Refusal> {
+    let (temperature_K, half_width_K) = context.made_at_K(recipe);
+    let plan = plan(recipe, index, temperature_K, context)?;
+    let bench = Bench { plan: &plan, temperature_K, context };
+    bench.has_extent(block)?;
+    let mut unknowns = vec![0.0; plan.len()];
+    let run = bench.meet_finished_goals(&mut unknowns)?;
+    let mut outcome = bench.outcome(run, half_width_K);
+    for entry in &recipe.entries {
+        if let Action::Found { what, strength, .. } = &entry.action {
+            found::take_over(&mut outcome, what, strength, context)?;
+        }
+    }
+    verdicts(recipe, outcome, context, findings)
+}
+
+/// A goal of the finished solution, and the planned line whose amount meets it.
+struct Sought<'b> {
+    number: usize,
+    line: &'b Planned,
+    goal: &'b Goal,
+    property: &'b Property,
+    aim: f64,
+    is_pair: bool,
+}
+
+struct Bench<'a, 'b> {
+    plan: &'b [Planned],
+    temperature_K: f64,
+    context: &'b Context<'a>,
+}
+
+impl Bench<'_, '_> {
+    /// A recipe must say how much is made, and in what.
+    fn has_extent(&self, block: &Block) -> Result<(), Refusal> {
+        let at = block.header_anchor();
+        let mut has_liquid = false;
+        let mut has_extent = false;
+        for line in self.plan {
+            match &line.work {
+                Work::Add { goods, dose, .. } => {
+                    has_extent |= matches!(dose, Dose::Fixed(mass) if *mass > 0.0);
+                    has_liquid |= goods.is_liquid;
+                }
+                Work::Pair { members, total, .. } => {
+                    has_extent |= matches!(total, Dose::Fixed(_));
+                    has_liquid |= members.iter().any(|goods| goods.is_liquid);
+                }
+                Work::FillTo { goods, .. } => {
+                    has_extent = true;
+                    has_liquid |= goods.density.is_some() || goods.is_liquid;
+                }
+                Work::SetPh { titrants, .. } => has_liquid |= titrants.iter().any(|goods| goods.is_liquid),
+                Work::Adjust { goods, .. } | Work::ByEye { goods, .. } => has_liquid |= goods.is_liquid,
+                Work::Divider | Work::Instead { .. } => {}
+            }
+        }
+        if self.plan.is_empty() || !has_extent {
+            return Err(Finding::new(Code::NoExtent, at, "The recipe does not say how much is made.")
+                .help("Add a line such as `q.s. water to 1 L`, or state a volume, a mass or an amount.")
+                .into());
+        }
+        if !has_liquid {
+            return Err(Finding::new(Code::NoSolvent, at, "The recipe names nothing that its substances are dissolved in.")
+                .help("Add a line such as `q.s. water to 1 L`.")
+                .into());
+        }
+        Ok(())
+    }
+
+    fn root(
+        &self,
+        f: impl FnMut(f64) -> Result<f64, Refusal>,
+        low: f64,
+        high: f64,
+        tolerance: f64,
+        at: Anchor,
+    ) -> Result<f64, Refusal> {
+        match find_root(f, low, high, tolerance, 200) {
+            Ok(root) => Ok(root.x),
+            Err(TargetFailure::Evaluation(refusal)) => Err(refusal),
+            Err(TargetFailure::NotBracketed { .. } | TargetFailure::NotFinite | TargetFailure::Steps { .. }) => {
+                Err(Finding::new(Code::NoSolutionFound, at, "The search for this amount did not come to an end.")
+                    .help("Check the amounts; a number may be off by a factor of a thousand.")
+                    .into())
+            }
+        }
+    }
+
+    /// Runs the lines until how much is made comes out as what was put in.
+    fn settle(&self, unknowns: &[f64]) -> Result<Run, Refusal> {
+        let parts = self.plan.last().map_or(1, |line| line.part + 1);
+        let mut finals: Vec<Finals> = (0..parts).map(|part| self.first_guess(part)).collect();
+        let depends = self.plan.iter().any(|line| match &line.work {
+            Work::Add { dose, .. } | Work::Pair { total: dose, .. } => !matches!(dose, Dose::Fixed(_)),
+            _ => false,
+        });
+        let mut last_change = f64::INFINITY;
+        for _ in 0..MAX_ROUNDS {
+            let run = self.run(&finals, unknowns)?;
+            let change = run
+                .finals
+                .iter()
+                .zip(&finals)
+                .map(|(new, old)| {
+                    let relative = |new: f64, old: f64| ((new - old) / new.abs().max(1e-30)).abs();
+                    relative(new.litres, old.litres)
+                        .max(relative(new.water_kg, old.water_kg))
+                        .max(relative(new.kilograms, old.kilograms))
+                })
+                .fold(0.0, f64::max);
+            // Rounding keeps the last digits moving; once they no longer settle further they are as good as they get.
+            if !depends || change < 1e-12 || (change < 1e-9 && change >= last_change) {
+                return Ok(run);
+            }
+            last_change = change;
+            finals = run.finals;
+        }
+        let at = self.plan.first().map_or(Anchor::default(), |line| line.at);
+        Err(Finding::new(Code::NoSolutionFound, at, "How much is made cannot be settled: the concentrations leave no room for the liquid.")
+            .help("Check the concentrations, or add a make-up line.")
+            .into())
+    }
+
+    fn first_guess(&self, part: usize) -> Finals {
+        let mut kilograms = 0.0;
+        for line in self.plan.iter().filter(|line| line.part <= part) {
+            match &line.work {
+                Work::Add { dose: Dose::Fixed(mass), .. } => kilograms += mass,
+                Work::FillTo { extent: Extent::Litres(litres), .. } => kilograms = *litres,
+                Work::FillTo { extent: Extent::Kilograms(mass), .. } => kilograms = *mass,
+                _ => {}
+            }
+        }
+        Finals { litres: kilograms, water_kg: 0.97 * kilograms, kilograms }
+    }
+
+    /// One run through the lines, given how much each part comes to.
+    fn run(&self, finals: &[Finals], unknowns: &[f64]) -> Result<Run, Refusal> {
+        let mut run = Run::default();
+        let mut beaker = Beaker::default();
+        for (number, line) in self.plan.iter().enumerate() {
+            let of_part = finals.get(line.part).copied().unwrap_or_default();
+            let unknown = unknowns.get(number).copied().unwrap_or(0.0);
+            let mut masses = [0.0, 0.0];
+            match &line.work {
+                Work::Add { goods, dose, .. } => {
+                    masses[0] = dose.of(&of_part);
+                    beaker.add(goods, masses[0]);
+                }
+                Work::Instead { dose, .. } => masses[0] = dose.of(&of_part),
+                Work::Pair { members, kg_per_unit, total, .. } => {
+                    let total = total.of(&of_part);
+                    masses = [total * (1.0 - unknown) * kg_per_unit[0], total * unknown * kg_per_unit[1]];
+                    beaker.add(&members[0], masses[0]);
+                    beaker.add(&members[1], masses[1]);
+                }
+                Work::Adjust { goods, .. } => {
+                    masses[0] = unknown;
+                    beaker.add(goods, unknown);
+                }
+                Work::ByEye { goods, mass_kg } => {
+                    masses[0] = *mass_kg;
+                    beaker.add(goods, *mass_kg);
+                }
+                Work::FillTo { goods, extent } => {
+                    masses[0] = self.fill(&beaker, goods, *extent, line.at)?;
+                    beaker.add(goods, masses[0]);
+                }
+                Work::SetPh { titrants, goal, aim, window, liquid } => {
+                    let (which, mass, point) = self.set(&beaker, titrants, goal, *aim, *window, *liquid, line)?;
+                    if let (Some(slot), Some(titrant)) = (masses.get_mut(which), titrants.get(which)) {
+                        *slot = mass;
+                        beaker.add(titrant, mass);
+                    }
+                    run.set_points.push(point);
+                }
+                Work::Divider => {
+                    run.finals.push(self.finals_of(&beaker, line.at)?);
+                    run.parts.push((line.entry, beaker.clone()));
+                }
+            }
+            run.masses.push(masses);
+        }
+        let at = self.plan.last().map_or(Anchor::default(), |line| line.at);
+        run.finals.push(self.finals_of(&beaker, at)?);
+        run.beaker = beaker;
+        Ok(run)
+    }
+
+    fn finals_of(&self, beaker: &Beaker, at: Anchor) -> Result<Finals, Refusal> {
+        let litres = self.volume(&beaker.mixture, at)?;
+        Ok(Finals { litres, water_kg: beaker.water_kg, kilograms: beaker.kilograms })
+    }
+
+    /// The value of a goal's property in a mixture, at the goal's own temperature and dilution.
+    fn value(&self, mixture: &Mixture, goal: &Goal, property: &Property, at: Anchor) -> Result<f64, Refusal> {
+        let mut mixture = mixture.clone();
+        if let Some(dilution) = &goal.diluted {
+            mixture = diluted(&mixture, dilution.fold, dilution.with.as_ref(), self.temperature_K, self.context)?;
+        }
+        let temperature_K = goal.temperature.map_or(self.temperature_K, |stated| stated.value);
+        let state = state_of(&mixture, temperature_K, self.context).map_err(|failure| Refusal::of_chemistry(at, &failure))?;
+        let unit = match &goal.kind {
+            GoalKind::Property { unit, .. } => *unit,
+            _ => None,
+        };
+        property_value(&state, property, unit, None, self.context)
+            .map_err(|why| Refusal::from(why.finding(goal.at)))
+    }
+
+    fn state(&self, beaker: &Beaker, at: Anchor) -> Result<State, Refusal> {
+        state_of(&beaker.mixture, self.temperature_K, self.context).map_err(|failure| Refusal::of_chemistry(at, &failure))
+    }
+}
