@@ -1,6 +1,8 @@
 //! The built-in library: substances, ions and constants, written in the language itself, each with its source.
 
 mod hazards;
+#[cfg(test)]
+mod solids;
 
 pub use hazards::hazard_statement;
 
@@ -32,6 +34,14 @@ const FILES: &[(&str, &str)] = files![
     "ions-nonmetals.prep",
     "ions-organic.prep",
     "ions-phosphates.prep",
+    "solids-acids.prep",
+    "solids-carbonates.prep",
+    "solids-halides.prep",
+    "solids-hydroxides.prep",
+    "solids-oxalates.prep",
+    "solids-phosphates.prep",
+    "solids-soluble-salts.prep",
+    "solids-sulfates-sulfides.prep",
     "substances-alcohols.prep",
     "substances-alkalis.prep",
     "substances-aluminium-rare-earths.prep",
