@@ -17,6 +17,16 @@ pub struct Fixture {
     pub offset: usize,
     /// The text of that file.
     pub text: String,
+    workspace: Workspace,
+}
+
+impl Fixture {
+    /// What is known once the text of the cursor's file is another.
+    pub fn retyped(&mut self, text: &str) -> Arc<Snapshot> {
+        let path = self.snapshot.file(self.file).unwrap().path.clone();
+        self.workspace.set_open_text(&path, Arc::new(SourceText::from(text)));
+        self.workspace.snapshot()
+    }
 }
 
 /// Reads a fixture.
@@ -40,7 +50,7 @@ pub fn fixture(text: &str) -> Fixture {
         }
     }
     let (file, offset, text) = found.unwrap();
-    Fixture { snapshot: workspace.snapshot(), file, offset, text }
+    Fixture { snapshot: workspace.snapshot(), file, offset, text, workspace }
 }
 
 /// The text with replacements done.

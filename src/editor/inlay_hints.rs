@@ -1,12 +1,14 @@
 //! Computed values beside the text: short, steady, each of a category that can be switched off.
 
+use std::sync::Arc;
+
 use super::cursor::{block_span, statement_span};
 use super::target::definition_of;
-use super::values::{Values, finished_ph, joined, judged, measured_out, shown_ph};
+use super::values::{Values, filled_up, finished_ph, joined, judged, measured_out, shown_ph};
 use crate::evaluate::{LineOutcome, Outcome};
 use crate::finding::Anchor;
-use crate::model::{Action, Addition, Body, Entry, MakeUp, Pair, is_water};
-use crate::syntax::tree::BlockKind;
+use crate::model::{Action, Addition, Block, Body, Entry, MakeUp, Pair, is_water};
+use crate::syntax::tree::{BlockKind, Line};
 use crate::text::{FileId, Span};
 use crate::units::{Unit, format};
 use crate::workspace::{FileState, Snapshot};
@@ -76,8 +78,13 @@ pub fn inlay_hints(snapshot: &Snapshot, file: FileId, range: Span) -> Vec<InlayH
         if block.kind() != Some(BlockKind::Solution) || span.end < range.start || range.end < span.start {
             continue;
         }
-        if let Some(values) = Values::of(snapshot, file, index) {
-            Hints { snapshot, state, index, values, hints: &mut hints }.block();
+        if let Some(values) = Values::of(snapshot, file, index).filter(|values| !values.outcomes().is_empty()) {
+            Hints { snapshot, state, index, values, now: None, hints: &mut hints }.block();
+        } else if let Some(before) = snapshot.remembered(file, index)
+            && let Some(recipe) = before.evaluation.recipe.as_deref().or(before.block.recipe())
+        {
+            let values = Values { block: &before.block, recipe, evaluation: &before.evaluation };
+            Hints { snapshot, state, index, values, now: Some(block), hints: &mut hints }.block();
         }
     }
     hints.retain(|hint| range.touches(hint.offset));
@@ -91,6 +98,8 @@ struct Hints<'a, 'b> {
     state: &'a FileState,
     index: usize,
     values: Values<'a>,
+    /// The block as it stands, where the values are of its last version without a mistake.
+    now: Option<&'a Block>,
     hints: &'b mut Vec<InlayHint>,
 }
 
@@ -130,9 +139,14 @@ impl<'a> Hints<'a, '_> {
         let mut label = format!("pH {ph}");
         let mut tooltip = "pH of the finished solution where it is made".to_owned();
         if let [outcome] = outcomes {
-            let elsewhere = outcome.uses.iter().find(|(kelvin, _)| (kelvin - outcome.made_at_K).abs() > 0.05);
-            if let Some((kelvin, Ok(state))) = elsewhere {
-                label.push_str(&format!(", {} at {}", shown_ph(state), format::temperature(*kelvin)));
+            // Of the temperatures of use the one that matters: where the pH is farthest from that at the making.
+            let made = outcome.finished.as_ref().map_or(f64::NAN, |state| state.pH());
+            let uses = outcome.uses.iter().filter_map(|(kelvin, state)| Some((*kelvin, state.as_ref().ok()?)));
+            let farthest = uses.max_by(|(_, one), (_, other)| (one.pH() - made).abs().total_cmp(&(other.pH() - made).abs()));
+            if let Some((kelvin, state)) = farthest
+                && shown_ph(state) != ph
+            {
+                label.push_str(&format!(", {} at {}", shown_ph(state), format::temperature(kelvin)));
                 tooltip.push_str(" and where it is used");
             }
             if let (Ok(state), Some(unit)) = (&outcome.finished, Unit::parse("mol/L")) {
@@ -143,14 +157,7 @@ impl<'a> Hints<'a, '_> {
             tooltip.push_str(", from the first to the last of the series");
         }
         let end = self.values.block.header_anchor().span.end;
-        let offset = self.state.absolute(self.index, Anchor::new(0, Span::empty(end))).start;
-        self.hints.push(InlayHint {
-            offset,
-            label,
-            tooltip: format!("{tooltip}."),
-            category: HintCategory::Solution,
-            text_edit: None,
-        });
+        self.place(Anchor::new(0, Span::empty(end)), HintCategory::Solution, "", label, format!("{tooltip}."), None);
     }
 
     fn addition(&mut self, entry: &Entry, addition: &Addition, lines: &[&'a LineOutcome]) {
@@ -185,7 +192,7 @@ impl<'a> Hints<'a, '_> {
     }
 
     fn make_up(&mut self, entry: &Entry, make_up: &MakeUp, lines: &[&'a LineOutcome]) {
-        let value = shown(lines, |line| measured_out(line, 3));
+        let value = shown(lines, |line| filled_up(line, make_up, 3));
         let is_adjusted = lines.iter().all(|line| self.values.is_adjusted(line));
         let names: Vec<&str> = lines.iter().map(|line| line.name.as_str()).collect();
         let taken = match (&make_up.alternative, names.first()) {
@@ -216,14 +223,47 @@ impl<'a> Hints<'a, '_> {
     ) {
         let (Some(value), Some(node)) = (value, self.values.block.lines.get(line)) else { return };
         let end = statement_span(node).end;
-        let offset = self.state.absolute(self.index, Anchor::new(line, Span::empty(end))).start;
-        self.hints.push(InlayHint {
-            offset,
-            label: format!("{sign} {value}"),
-            tooltip: tooltip.to_owned(),
-            category,
-            text_edit: write.map(|text| (Span::empty(offset), text)),
-        });
+        self.place(Anchor::new(line, Span::empty(end)), category, sign, value, tooltip.to_owned(), write);
+    }
+
+    /// Adds a hint at a place of the block that has the values. Where these are of an earlier version, they stand only beside
+    /// lines that have not changed since, and say so.
+    fn place(
+        &mut self,
+        at: Anchor,
+        category: HintCategory,
+        sign: &str,
+        value: String,
+        tooltip: String,
+        write: Option<String>,
+    ) {
+        let place = |line| self.state.absolute(self.index, Anchor::new(line, at.span)).start;
+        let hint = match self.now {
+            None => {
+                let offset = place(at.line);
+                let label = format!("{sign} {value}").trim_start().to_owned();
+                InlayHint { offset, label, tooltip, category, text_edit: write.map(|text| (Span::empty(offset), text)) }
+            }
+            Some(now) => {
+                let Some(line) = unchanged(self.values.block, now, at.line) else { return };
+                let tooltip = format!("{tooltip}\nThis was so before the mistake that now keeps the recipe from being worked out.");
+                InlayHint { offset: place(line), label: format!("was {value}"), tooltip, category, text_edit: None }
+            }
+        };
+        self.hints.push(hint);
+    }
+}
+
+/// Where a line of the old block stands in the new one, if it lies in what both begin with or in what both end with.
+fn unchanged(old: &Block, new: &Block, line: usize) -> Option<usize> {
+    let same = |(one, other): &(&Arc<Line>, &Arc<Line>)| one.text == other.text;
+    let (before, now) = (old.lines.len(), new.lines.len());
+    let begin = old.lines.iter().zip(&new.lines).take_while(same).count();
+    let end = old.lines.iter().rev().zip(new.lines.iter().rev()).take_while(same).count().min(before.min(now) - begin);
+    match line {
+        line if line < begin => Some(line),
+        line if line >= before - end => Some(line + now - before),
+        _ => None,
     }
 }
 
@@ -271,7 +311,7 @@ mod tests {
     #[test]
     fn a_series_shows_its_first_and_last() {
         let shown = check("solution Stock\n    made at    25 °C\n    5.844 g    sodium chloride\n    q.s.       water to 1 L\n\nsolution Level\n    made at    25 °C\n    1, 2, 4 mL  Stock\n    q.s.       water to 100 mL\n");
-        assert!(shown.contains("1, 2, 4 mL  Stock ⟨= 1.00 mmol/L to 4.00 mmol/L⟩"), "{shown}");
+        assert!(shown.contains("1, 2, 4 mL  Stock ⟨= 1.00 to 4.00 mmol/L⟩"), "{shown}");
     }
 
     #[test]
@@ -282,6 +322,29 @@ mod tests {
         let [took] = with_edit.as_slice() else { panic!("{hints:?}") };
         assert_eq!(took.category, HintCategory::Taken);
         assert!(took.text_edit.as_ref().unwrap().1.starts_with(", about 2"), "{took:?}");
+    }
+
+    #[test]
+    fn what_was_known_before_a_mistake_stays_beside_the_lines_that_did_not_change() {
+        let good = "solution A\n    made at    25 °C\n    0.2922 g   sodium chloride\n    1 g        sucrose\n    q.s.       water to 1 L\n\nsolution B\n    1 g        sucrose\n    q.s.       water to 1 L\n";
+        let mut fixture = fixture(good);
+        let mut shown = |text: &str| -> Vec<String> {
+            let snapshot = fixture.retyped(text);
+            let hints = inlay_hints(&snapshot, fixture.file, Span::new(0, text.len()));
+            assert!(hints.iter().all(|hint| !hint.label.starts_with("was") || hint.text_edit.is_none()));
+            hints.into_iter().map(|hint| format!("{}: {}", text[..hint.offset].matches('\n').count(), hint.label)).collect()
+        };
+        let before = shown(good);
+        assert!(before.contains(&"2: = 5.00 mmol/L".to_owned()), "{before:?}");
+        // A line half written, then another: lines keep what was known of them, and the other solution its own values.
+        let half = shown(&good.replacen("    1 g        sucrose\n", "    1 g        suc\n    2 \n", 1));
+        assert!(half.contains(&"2: was 5.00 mmol/L".to_owned()), "{half:?}");
+        assert!(half.iter().all(|hint| !hint.starts_with("3:") && !hint.starts_with("4:")), "{half:?}");
+        assert!(half.iter().any(|hint| hint.starts_with("5: was ")), "{half:?}");
+        assert!(half.iter().any(|hint| hint.starts_with("8: = ")), "{half:?}");
+        let other = shown(&good.replacen("0.2922 g ", "0.29 ", 1));
+        assert!(other.iter().all(|hint| !hint.starts_with("2:")), "{other:?}");
+        assert_eq!(shown(good), before);
     }
 
     #[test]

@@ -66,7 +66,9 @@ pub fn rename(snapshot: &Snapshot, file: FileId, offset: usize, new_name: &str) 
             .filter(|one| NameKey::new(&unquoted(one.span.of(state.source.as_str()))) == definition.key.name)
             .map(|one| FileEdit { file: one.file, span: one.span, text: written.clone() })
             .collect();
-        if !spelled.is_empty() && state.id != definition.key.file {
+        // The name may mean something where the thing is seen and not named: a later line there would be ambiguous.
+        let sees_it = snapshot.scope(state.id).own.sources().contains(&definition.key.file);
+        if sees_it && state.id != definition.key.file {
             refuse_collision(snapshot, state.id, &definition, &new_key, &new_name)?;
         }
         edits.extend(spelled);
@@ -121,6 +123,13 @@ mod tests {
         let expected = |header: &str, reference: &str| text.replace("Sto‸ck", header).replace("mL       stock", &format!("mL       {reference}"));
         assert_eq!(check(text, "Salt stock").unwrap(), expected("Salt stock", "Salt stock"));
         assert_eq!(check(text, "10x stock").unwrap(), expected("\"10x stock\"", "\"10x stock\""));
+    }
+
+    #[test]
+    fn a_name_that_is_taken_where_the_thing_is_only_seen_is_refused() {
+        let text = "solution Sto‸ck\n    q.s.       water to 1 L\n//- other.prep\nuse \"main.prep\"\nsolution Brine\n    q.s.       water to 1 L\n//- apart.prep\nsolution Rinse\n    q.s.       water to 1 L\n";
+        assert!(check(text, "Brine").unwrap_err().contains("already means Brine in other.prep"));
+        assert!(check(text, "Rinse").is_ok(), "a file that does not see it does not matter");
     }
 
     #[test]

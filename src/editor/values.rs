@@ -4,7 +4,7 @@ use std::sync::Arc;
 
 use crate::chemistry::State;
 use crate::evaluate::{Evaluation, LineOutcome, Outcome, Role, Verdict};
-use crate::model::{Addition, Block, Entry, Recipe};
+use crate::model::{Addition, Block, Entry, GoalKind, MakeUp, Recipe};
 use crate::text::FileId;
 use crate::units::{Dimension, format};
 use crate::workspace::Snapshot;
@@ -99,14 +99,25 @@ pub fn measured_out(line: &LineOutcome, digits: usize) -> String {
     }
 }
 
-/// Shown values of the members of a series: one where all are alike, else the first and the last.
+/// What is measured out where the target of a make-up says so: a mass is filled up on the balance.
+pub fn filled_up(line: &LineOutcome, make_up: &MakeUp, digits: usize) -> String {
+    match make_up.goals.first().map(|goal| &goal.kind) {
+        Some(GoalKind::Mass { .. }) => format::mass(line.mass_kg, digits),
+        _ => measured_out(line, digits),
+    }
+}
+
+/// Shown values of the members of a series: one where all are alike, else the first and the last, their unit once.
 pub fn joined(shown: &[String]) -> Option<String> {
     let first = shown.first()?;
     let last = shown.last()?;
     if shown.iter().all(|one| one == first) {
         return Some(first.clone());
     }
-    Some(format!("{first} to {last}"))
+    Some(match (first.split_once(' '), last.split_once(' ')) {
+        (Some((number, unit)), Some((_, same))) if unit == same => format!("{number} to {last}"),
+        _ => format!("{first} to {last}"),
+    })
 }
 
 /// The pH of a state, to one decimal and as `about` where little holds it in place.
@@ -126,29 +137,16 @@ pub fn finished_ph(outcomes: &[&Outcome]) -> Option<String> {
     joined(&shown?)
 }
 
-/// What became of an expectation: its values, each with the temperature where it was judged at several.
+/// What became of an expectation: its value; the lowest to the highest, where it was judged at several temperatures and they
+/// differ.
 pub fn judged(verdicts: &[&Verdict]) -> Option<String> {
     let value = |verdict: &Verdict| verdict.value.map(|value| format::with_unit(value, verdict.unit));
     let values: Vec<String> = verdicts.iter().filter_map(|verdict| value(verdict)).collect();
     if values.len() != verdicts.len() {
         return None;
     }
-    let first = values.first()?;
-    if values.iter().all(|one| one == first) {
-        return Some(first.clone());
-    }
-    let same_temperature =
-        verdicts.windows(2).all(|pair| matches!(pair, [one, other] if one.temperature_K == other.temperature_K));
-    if same_temperature || verdicts.len() > 3 {
-        let by_value = |one: &&&Verdict, other: &&&Verdict| one.value.unwrap_or(0.0).total_cmp(&other.value.unwrap_or(0.0));
-        let low = verdicts.iter().min_by(by_value).and_then(|verdict| value(verdict))?;
-        let high = verdicts.iter().max_by(by_value).and_then(|verdict| value(verdict))?;
-        return Some(format!("{low} to {high}"));
-    }
-    let at_temperatures: Vec<String> = verdicts
-        .iter()
-        .zip(&values)
-        .map(|(verdict, value)| format!("{value} at {}", format::temperature(verdict.temperature_K)))
-        .collect();
-    Some(at_temperatures.join(", "))
+    let by_value = |one: &&&Verdict, other: &&&Verdict| one.value.unwrap_or(0.0).total_cmp(&other.value.unwrap_or(0.0));
+    let low = verdicts.iter().min_by(by_value).and_then(|verdict| value(verdict))?;
+    let high = verdicts.iter().max_by(by_value).and_then(|verdict| value(verdict))?;
+    joined(&[low, high])
 }

@@ -120,9 +120,11 @@ pub(super) fn snapshot(
         findings: HashMap::new(),
         inputs: HashMap::new(),
         users: HashMap::new(),
+        remembered: HashMap::new(),
         library_files: LIBRARY_FILES.clone(),
     };
     evaluate_all(&mut snapshot, last, progress);
+    snapshot.remembered = super::remember::remember(&snapshot, last);
     let findings: HashMap<FileId, Arc<Vec<Located>>> = snapshot
         .files
         .par_iter()

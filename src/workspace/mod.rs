@@ -5,11 +5,13 @@ mod configuration;
 mod disk;
 mod order;
 mod progress;
+mod remember;
 mod snapshot;
 
 pub use configuration::{Configuration, ConfigurationError};
 pub use disk::{CONFIGURATION_FILE, find_root, is_home, is_marked, nested_roots, recipe_files};
 pub use progress::Progress;
+pub use remember::Remembered;
 pub use snapshot::{Checked, FileState, Located, Origin, RootView, Snapshot};
 
 use std::collections::BTreeMap;

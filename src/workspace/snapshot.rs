@@ -130,6 +130,7 @@ pub struct Snapshot {
     pub(super) findings: HashMap<FileId, Arc<Vec<Located>>>,
     pub(super) inputs: HashMap<(FileId, usize), super::build::Inputs>,
     pub(super) users: HashMap<DefinitionKey, Vec<(FileId, usize)>>,
+    pub(super) remembered: HashMap<(FileId, usize), Arc<super::Remembered>>,
     pub(super) library_files: BTreeMap<FileId, Arc<FileState>>,
 }
 
@@ -170,6 +171,11 @@ impl Snapshot {
     /// What is known of a block.
     pub fn checked(&self, file: FileId, block: usize) -> Option<&Arc<Checked>> {
         self.checked.get(&(file, block))
+    }
+
+    /// What a solution that has no values now came to before the mistake in it.
+    pub fn remembered(&self, file: FileId, block: usize) -> Option<&Arc<super::Remembered>> {
+        self.remembered.get(&(file, block))
     }
 
     /// The evaluation of a definition.

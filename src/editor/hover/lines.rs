@@ -8,7 +8,7 @@ use super::super::values::{Values, measured_out};
 use super::molar_mass_of;
 use super::solutions::range;
 use crate::evaluate::{LineOutcome, Outcome, Role, Verdict};
-use crate::model::{Definition, Expectation};
+use crate::model::{Body, Definition, Expectation, is_water};
 use crate::units::format;
 use crate::workspace::Snapshot;
 
@@ -67,10 +67,15 @@ fn rows(snapshot: &Snapshot, outcome: &Outcome, line: &LineOutcome, page: &mut P
         Some(_) => format!("{} ({mass})", measured_out(line, 4)),
         None => mass,
     });
-    let is_stock = definition_of(snapshot, &line.definition).is_some_and(|definition| definition.block.recipe().is_some());
-    let label = if is_stock { "amount dissolved in it" } else { "amount" };
-    page.row_if(label, line.amount_mol.map(|moles| format::amount(moles, 4)));
-    page.row_if("in the finished solution", line.concentration_mol_per_L.map(|value| format::concentration(value, 4)));
+    let definition = definition_of(snapshot, &line.definition);
+    let body = definition.as_ref().map(|definition| &definition.block.body);
+    // Of the liquid that fills up nobody asks how many moles it is.
+    if !matches!(body, Some(Body::Substance(substance)) if is_water(substance)) {
+        let is_stock = definition.as_ref().is_some_and(|definition| definition.block.recipe().is_some());
+        let label = if is_stock { "amount dissolved in it" } else { "amount" };
+        page.row_if(label, line.amount_mol.map(|moles| format::amount(moles, 4)));
+        page.row_if("in the finished solution", line.concentration_mol_per_L.map(|value| format::concentration(value, 4)));
+    }
     if let Some(point) = outcome.set_points.iter().find(|point| point.entry == line.entry) {
         page.row("pH before", format::ph(point.pH_before));
         page.row("pH as set", format::ph(point.state.pH()));

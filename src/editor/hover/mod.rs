@@ -18,6 +18,9 @@ use crate::syntax::tree::{Statement, TokenKind};
 use crate::text::{FileId, Span};
 use crate::workspace::Snapshot;
 
+/// How many meanings of a name are shown.
+const SHOWN: usize = 6;
+
 /// What is told of a thing.
 #[derive(Clone, Debug, PartialEq, Eq)]
 pub struct Hover {
@@ -73,10 +76,16 @@ fn named(snapshot: &Snapshot, target: &Target, text: &str, definitions: &[Defini
             page.append(things::page(snapshot, cursor.file.id, definition, Some((text, line))));
         }
         several => {
-            page.title(text, "can mean several things");
-            for definition in several {
+            // With `from`, all forms of the thing count, and the line is worked out all the same.
+            let line = lines::of_line(snapshot, cursor);
+            page.title(text, if line.is_some() { "in any of its forms" } else { "can mean several things" });
+            page.append(line.unwrap_or_default());
+            for definition in several.iter().take(SHOWN) {
                 let kind = definition.block.kind().map_or("", describe::kind_word);
                 page.row(definition.name(), format!("{kind} {}", things::detail(snapshot, definition)).trim());
+            }
+            if several.len() > SHOWN {
+                page.row(format!("and {} more", several.len() - SHOWN), "");
             }
         }
     }
@@ -106,6 +115,8 @@ fn explanation(code: Code) -> Page {
     let paragraphs = code.page().split("\n\n").map(str::trim);
     let first = paragraphs.into_iter().find(|paragraph| !paragraph.is_empty() && !paragraph.starts_with('#'));
     let text = first.unwrap_or(code.summary());
+    // The level stands in the title already.
+    let text = text.split(" Level: ").next().unwrap_or(text);
     page.sentence(text.split_whitespace().collect::<Vec<_>>().join(" "));
     page.sentence(format!("More: scruple explain {}", code.name()));
     page
