@@ -96,7 +96,7 @@ pub(super) fn buffering_total(case: &Case, outcome: &Outcome) -> f64 {
 const CHELATOR_LOG_K: f64 = 7.2;
 
 /// Whether a component binds calcium as chelators do.
-fn is_chelator(case: &Case, component: ComponentId) -> bool {
+pub(super) fn is_chelator(case: &Case, component: ComponentId) -> bool {
     let constituents = case.context.constituents;
     let Some(calcium) = constituents.named(&NameKey::new("calcium")).and_then(|calcium| calcium.component) else { return false };
     let chemistry = &constituents.chemistry;

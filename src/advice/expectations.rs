@@ -24,7 +24,7 @@ pub(super) fn rule(case: &Case, findings: &mut Vec<Finding>) {
 
 fn failed(case: &Case, verdict: &Verdict, made_at_K: f64, expectation: Option<&crate::model::Expectation>) -> Finding {
     let value = verdict.value.unwrap_or(f64::NAN);
-    let digits = |base: f64| format::with_unit(base, verdict.unit);
+    let digits = |base: f64| verdict.property.shown(base, verdict.unit);
     let limits = match (verdict.low, verdict.high) {
         (Some(low), Some(high)) => format!("{} to {}", digits(low), digits(high)),
         (Some(low), None) => format!("at least {}", digits(low)),
@@ -53,8 +53,8 @@ fn failed(case: &Case, verdict: &Verdict, made_at_K: f64, expectation: Option<&c
 
 /// The value, with a digit more where rounding would hide why it fails.
 fn shown(value: f64, verdict: &Verdict) -> String {
-    let plain = format::with_unit(value, verdict.unit);
-    let at_a_limit = [verdict.low, verdict.high].into_iter().flatten().any(|limit| format::with_unit(limit, verdict.unit) == plain);
+    let plain = verdict.property.shown(value, verdict.unit);
+    let at_a_limit = [verdict.low, verdict.high].into_iter().flatten().any(|limit| verdict.property.shown(limit, verdict.unit) == plain);
     match (at_a_limit, verdict.unit) {
         (true, Some(unit)) => format!("{} {}", format::significant(unit.from_base(value), 6), unit.symbol()),
         (true, None) => format!("{value:.4}"),

@@ -6,6 +6,7 @@ mod buffering;
 mod definitions;
 mod expectations;
 mod forms;
+mod free_ions;
 mod range;
 mod setting;
 mod steps;
@@ -94,6 +95,8 @@ pub const RULES: &[Rule] = &[
     temperature::temperature_shift,
     buffering::weak_buffering,
     range::outside_model_range,
+    free_ions::steep_target,
+    free_ions::metal_bound,
     expectations::rule,
 ];
 

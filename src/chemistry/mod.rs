@@ -8,6 +8,7 @@ mod constants;
 mod database;
 mod mixture;
 mod activity;
+mod alkalinity;
 mod failure;
 mod equilibrium;
 mod volume;
@@ -19,6 +20,7 @@ mod buffering;
 mod conductivity;
 pub mod targets;
 
+pub use alkalinity::ALKALINITY_END_POINT_pH;
 pub use buffering::BufferInterval;
 pub use conductivity::Conductivity;
 pub use activity::ActivityModel;

@@ -140,7 +140,7 @@ pub fn finished_ph(outcomes: &[&Outcome]) -> Option<String> {
 /// What became of an expectation: its value; the lowest to the highest, where it was judged at several temperatures and they
 /// differ.
 pub fn judged(verdicts: &[&Verdict]) -> Option<String> {
-    let value = |verdict: &Verdict| verdict.value.map(|value| format::with_unit(value, verdict.unit));
+    let value = |verdict: &Verdict| verdict.value.map(|value| verdict.property.shown(value, verdict.unit));
     let values: Vec<String> = verdicts.iter().filter_map(|verdict| value(verdict)).collect();
     if values.len() != verdicts.len() {
         return None;

@@ -19,7 +19,7 @@ pub use goods::{Goods, Stock};
 pub use strength::table_density;
 pub use names::{Found, comes_in_strengths, is_plain_stock_of, listed, meaning, place_of, written_form};
 pub use outcome::*;
-pub use property::{PropertyValue, as_formula_factor, key_element, property_value};
+pub use property::{PropertyValue, Question, as_formula_factor, free_mol, hardness_mol_per_L, key_element, property_value, total_mol};
 pub use refusal::Refusal;
 
 use crate::chemistry::Settings;

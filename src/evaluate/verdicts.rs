@@ -2,7 +2,7 @@
 
 use super::bench::diluted;
 use super::goods::state_of;
-use super::property::{PropertyValue, property_value};
+use super::property::{PropertyValue, Question, property_value};
 use super::{Context, Outcome, Refusal, Verdict};
 use crate::finding::{Code, Finding};
 use crate::model::{Expectation, Recipe};
@@ -86,7 +86,13 @@ fn value_of(
         vec![finding.help("Expect it where the solution can be worked out.")]
     })?;
     let formula = expectation.as_formula.as_ref().map(|(_, formula)| formula);
-    property_value(&state, &expectation.property, expectation.unit, formula, context).map(Some).map_err(|why| match why {
+    let question = Question {
+        property: &expectation.property,
+        unit: expectation.unit,
+        as_formula: formula,
+        says_temperature: expectation.temperature.is_some(),
+    };
+    property_value(&state, &question, context).map(Some).map_err(|why| match why {
         PropertyValue::Unknown(refusal) => refusal.into_findings(),
         other => vec![other.finding(expectation.at)],
     })

@@ -116,6 +116,7 @@ codes! {
     TemperatureNotStated, "temperature-not-stated", Warning, "A pH that depends on a temperature that nothing states.";
     // ── What a recipe gives ──
     ExpectationFails, "expectation-fails", Error, "An expectation that does not hold.";
+    ConductivityTemperatureMissing, "conductivity-temperature-missing", Error, "A conductivity without a temperature.";
     ExpectationWithoutValue, "expectation-without-value", Warning, "An expectation that cannot be judged.";
     TargetOutOfReach, "target-out-of-reach", Error, "A target that no amount can reach.";
     TargetAlreadyPassed, "target-already-passed", Error, "A target that is passed before anything is added.";
@@ -128,6 +129,8 @@ codes! {
     TemperatureShift, "temperature-shift", Warning, "A pH that moves between making and use.";
     DilutionShift, "dilution-shift", Warning, "A pH that moves when a concentrate is diluted.";
     SaltShift, "salt-shift", Warning, "A pH that moves when salt is added.";
+    SteepTarget, "steep-target", Warning, "An expected free ion that hangs on a hundredth of one line.";
+    MetalBound, "metal-bound", Warning, "A metal that a chelator in excess binds.";
     OutsideModelRange, "outside-model-range", Warning, "A solution beyond the range of the model.";
     NoSolutionFound, "no-solution-found", Error, "Equations for which the solver found no answer.";
 }

@@ -4,7 +4,7 @@
 use super::NameKey;
 use crate::finding::Anchor;
 use crate::text::Span;
-use crate::units::{Dimension, Unit};
+use crate::units::{Dimension, Unit, format};
 
 /// A value and where it was stated.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -177,6 +177,8 @@ pub struct Goal {
     pub kind: GoalKind,
     /// Where it stands on the line.
     pub at: Anchor,
+    /// `as FORMULA`.
+    pub as_formula: Option<crate::syntax::formula::Formula>,
     /// At which temperature, K, where it is said.
     pub temperature: Option<Stated<f64>>,
     /// After which dilution.
@@ -247,6 +249,8 @@ pub enum Property {
     Conductivity,
     /// Density.
     Density,
+    /// Activity of water.
+    WaterActivity,
     /// Alkalinity.
     Alkalinity,
     /// Hardness.
@@ -269,11 +273,20 @@ impl Property {
             Property::Osmolality => "osmolality".into(),
             Property::Conductivity => "conductivity".into(),
             Property::Density => "density".into(),
+            Property::WaterActivity => "water activity".into(),
             Property::Alkalinity => "alkalinity".into(),
             Property::Hardness => "hardness".into(),
             Property::Total(what) => format!("total {}", what.text),
             Property::Free(what) => format!("free {}", what.text),
             Property::SaturationIndex(what) => format!("saturation index of {}", what.text),
+        }
+    }
+
+    /// A value of it in the base unit, shown in the unit that was written; bare where it has none.
+    pub fn shown(&self, value: f64, unit: Option<Unit>) -> String {
+        match self {
+            Property::WaterActivity => format::fixed(value, 3),
+            _ => format::with_unit(value, unit),
         }
     }
 }

@@ -185,6 +185,17 @@ pub struct Lab {
     pub wares: Vec<Ware>,
     /// Meters with their tolerance.
     pub meters: Vec<(MeterKind, HalfWidth)>,
+    /// What the conductivity meter shows, where it says so.
+    pub conductivity_meter: Option<ConductivityMeter>,
+}
+
+/// How a conductivity meter brings its reading to a reference temperature.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct ConductivityMeter {
+    /// The temperature to which it refers, K.
+    pub reference_K: f64,
+    /// The change with temperature that it assumes, 1/K, of the conductivity at the reference; none where it follows the solution.
+    pub compensation_per_K: Option<f64>,
 }
 
 /// The key under which a definition is found, by its kind's namespace.

@@ -104,7 +104,7 @@ fn goal_words(subject: &Subject, line: &LineOutcome, goal: &Goal) -> String {
     match &goal.kind {
         GoalKind::Volume { litres, .. } => format::volume(*litres, FIGURES),
         GoalKind::Mass { kilograms, .. } => format::mass(*kilograms, FIGURES),
-        GoalKind::Property { property, aim, unit, .. } => format!("{} {}", property.words(), format::with_unit(*aim, *unit)),
+        GoalKind::Property { property, aim, unit, .. } => format!("{} {}", property.words(), property.shown(*aim, *unit)),
         GoalKind::Saturation => "saturation".to_owned(),
         GoalKind::ByEye(words) => format!("\"{words}\""),
     }

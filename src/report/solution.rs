@@ -7,7 +7,7 @@ use super::finding::{FindingReport, finding_report};
 use super::number::{celsius, number};
 use super::Subject;
 use crate::chemistry::{Failure, State};
-use crate::evaluate::{LineOutcome, Outcome, Role, SetPoint, Verdict};
+use crate::evaluate::{LineOutcome, Outcome, Role, SetPoint, Verdict, hardness_mol_per_L};
 use crate::model::{Expectation, Property};
 use crate::units::Unit;
 
@@ -35,6 +35,9 @@ pub struct SolutionReport {
     pub density_kg_per_m3: Option<f64>,
     pub conductivity_S_per_m: Option<f64>,
     pub osmolality_mol_per_kg: Option<f64>,
+    pub water_activity: Option<f64>,
+    pub alkalinity_mol_per_L: Option<f64>,
+    pub hardness_mol_per_L: Option<f64>,
     pub ingredients: Vec<IngredientReport>,
     pub set_points: Vec<SetPointReport>,
     pub found: Option<FoundReport>,
@@ -176,6 +179,9 @@ pub fn solution_report(subject: &Subject) -> SolutionReport {
         density_kg_per_m3: of_state(State::density_kg_per_m3),
         conductivity_S_per_m: state.and_then(conductivity),
         osmolality_mol_per_kg: of_state(State::osmolality_mol_per_kg),
+        water_activity: of_state(State::water_activity),
+        alkalinity_mol_per_L: state.and_then(|state| state.alkalinity_mol_per_L().ok()).and_then(number),
+        hardness_mol_per_L: of_state(hardness_mol_per_L),
         ingredients: lines(outcome).map(|line| ingredient(subject, line)).collect(),
         set_points: outcome.into_iter().flat_map(|outcome| &outcome.set_points).map(|point| set_point(subject, point)).collect(),
         found: outcome.and_then(|outcome| outcome.found).map(|(computed, found)| FoundReport {

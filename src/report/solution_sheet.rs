@@ -7,8 +7,8 @@ use super::line_words::{amount_taken, name_taken};
 use super::sheet::{Column, Part, Sheet, Table};
 use super::solution::{conductivity, reason};
 use super::Subject;
-use crate::chemistry::State;
-use crate::evaluate::{LineOutcome, Outcome, SetPoint, Verdict};
+use crate::chemistry::{ALKALINITY_END_POINT_pH, State};
+use crate::evaluate::{LineOutcome, Outcome, SetPoint, Verdict, hardness_mol_per_L};
 use crate::model::{self, Body, Stated, Storage};
 use crate::units::format;
 
@@ -99,6 +99,17 @@ fn state_facts(state: &State, fact: &mut impl FnMut(&str, String)) {
         fact("conductivity", format!("{} at {}", format::conductivity(conductivity, 3), format::temperature(state.temperature_K)));
     }
     fact("osmolality", format::osmolality(state.osmolality_mol_per_kg(), 3));
+    fact("water activity", format::fixed(state.water_activity(), 4));
+    let holds = |name: &str| state.totals_mol_per_L().any(|(id, _)| state.chemistry().component(id).is_some_and(|one| one.name == name));
+    if holds("carbonate")
+        && let Ok(alkalinity) = state.alkalinity_mol_per_L()
+    {
+        fact("alkalinity", format!("{} (strong acid to pH {})", format::concentration(alkalinity, 3), ALKALINITY_END_POINT_pH));
+    }
+    let hardness = hardness_mol_per_L(state);
+    if hardness > 0.0 {
+        fact("hardness", format!("{} (calcium and magnesium)", format::concentration(hardness, 3)));
+    }
     fact("density", format::density(state.density_kg_per_m3(), FIGURES));
 }
 
@@ -182,7 +193,7 @@ fn expected(subject: &Subject, outcome: &Outcome) -> Table {
             subject.line(verdict.at).to_string(),
             words.strip_prefix("expect ").unwrap_or(&words).to_owned(),
             format::temperature(verdict.temperature_K),
-            verdict.value.map(|value| format::with_unit(value, verdict.unit)).unwrap_or_default(),
+            verdict.value.map(|value| verdict.property.shown(value, verdict.unit)).unwrap_or_default(),
             judged(subject, verdict),
         ]
     });

@@ -110,6 +110,8 @@ pub fn ranges(items: &mut Items, cursor: &Cursor, statement: &Statement, span: S
         PropertyKind::Ph => Some(format!("{} ± 0.05", format::ph(state.pH()))),
         PropertyKind::IonicStrength => Some(format::concentration(state.ionic_strength_mol_per_L(), 2)),
         PropertyKind::BufferCapacity => Some(format!("at least {}", format::concentration(state.buffer_capacity_mol_per_L(), 1))),
+        PropertyKind::Osmolality => Some(format::osmolality(state.osmolality_mol_per_kg(), 2)),
+        PropertyKind::WaterActivity => Some(format!("{} ± 0.005", format::fixed(state.water_activity(), 3))),
         PropertyKind::Density => Some(format::density(state.density_kg_per_m3(), 4)),
         _ => None,
     });
@@ -208,7 +210,7 @@ fn dimensions(cursor: &Cursor, statement: &Statement, span: Span) -> Vec<Dimensi
             Some(PropertyKind::Osmolality) => &[D::Osmolality],
             Some(PropertyKind::Conductivity) => &[D::Conductivity],
             Some(PropertyKind::Density) => &[D::MassConcentration],
-            Some(PropertyKind::Alkalinity | PropertyKind::Hardness) => &[D::EquivalentConcentration],
+            Some(PropertyKind::Alkalinity | PropertyKind::Hardness) => &[D::AmountConcentration, D::EquivalentConcentration, D::MassConcentration],
             Some(PropertyKind::Total(_) | PropertyKind::Free(_)) => {
                 &[D::AmountConcentration, D::MassConcentration, D::Molality, D::MassFraction]
             }

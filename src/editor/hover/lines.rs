@@ -96,8 +96,8 @@ fn expectation_page(expectation: &Expectation, verdicts: &[&Verdict]) -> Page {
         let place = format!("at {}", format::temperature(verdict.temperature_K));
         let dilution = if verdict.fold > 1.0 { format!(", diluted {}-fold", format::plain(verdict.fold)) } else { String::new() };
         page.row(format!("{place}{dilution}"), match (verdict.value, verdict.holds) {
-            (Some(value), Some(true)) => format!("{}, holds{}", format::with_unit(value, verdict.unit), margin(verdict, value)),
-            (Some(value), _) => format!("{}, fails", format::with_unit(value, verdict.unit)),
+            (Some(value), Some(true)) => format!("{}, holds{}", verdict.property.shown(value, verdict.unit), margin(verdict, value)),
+            (Some(value), _) => format!("{}, fails", verdict.property.shown(value, verdict.unit)),
             (None, _) => "no value".to_owned(),
         });
     }

@@ -75,6 +75,12 @@ fn one(outcome: &Outcome, in_full: bool, page: &mut Page) {
         details(state, page);
     }
     if in_full {
+        page.row("osmolality", format::osmolality(state.osmolality_mol_per_kg(), 3));
+        let conductivity = state.conductivity();
+        if conductivity.unknown_share < 0.01 {
+            let place = format::temperature(state.temperature_K);
+            page.row("conductivity", format!("{} at {place}", format::conductivity(conductivity.value_S_per_m, 3)));
+        }
         page.row("density", format!("{}{}", format::density(state.density_kg_per_m3(), 4), if state.volume_is_estimated { " (estimated)" } else { "" }));
     }
     page.row("volume", format!("{} at {}", format::volume(outcome.volume_L, 4), format::temperature(outcome.made_at_K)));
@@ -115,7 +121,7 @@ fn verdict(expectation: &Expectation, verdicts: &[&Verdict]) -> Option<String> {
 
 /// The range of an expectation in words.
 pub fn range(expectation: &Expectation) -> String {
-    let show = |value: f64| format::with_unit(value, expectation.unit);
+    let show = |value: f64| expectation.property.shown(value, expectation.unit);
     match (expectation.low, expectation.high) {
         (Some(low), Some(high)) => joined(&[show(low), show(high)]).unwrap_or_default(),
         (Some(low), None) => format!("at least {}", show(low)),

@@ -9,7 +9,7 @@ mod volume;
 use super::found;
 use super::goods::{Goods, state_of};
 use super::plan::{Dose, Extent, Finals, Planned, Work, plan};
-use super::property::property_value;
+use super::property::{Question, property_value};
 use super::verdicts::verdicts;
 use super::{Context, Outcome, Refusal, SetPoint};
 use crate::chemistry::targets::{TargetFailure, find_root};
@@ -268,7 +268,13 @@ impl Bench<'_, '_> {
             GoalKind::Property { unit, .. } => *unit,
             _ => None,
         };
-        property_value(&state, property, unit, None, self.context)
+        let question = Question {
+            property,
+            unit,
+            as_formula: goal.as_formula.as_ref(),
+            says_temperature: goal.temperature.is_some(),
+        };
+        property_value(&state, &question, self.context)
             .map_err(|why| Refusal::from(why.finding(goal.at)))
     }
 

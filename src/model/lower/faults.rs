@@ -173,7 +173,7 @@ fn words(line: &Line, fault: &Fault, written: &str) -> (Code, String, String) {
         FaultKind::UnknownProperty => said(
             Code::UnknownProperty,
             format!("`{written}` is not a property that the language knows."),
-            "Properties are pH, ionic strength, buffer capacity, osmolality, conductivity, density, alkalinity, hardness, total NAME, free NAME, saturation index of PHASE.",
+            "Properties are pH, ionic strength, buffer capacity, osmolality, conductivity, density, water activity, alkalinity, hardness, total NAME, free NAME, saturation index of PHASE.",
         ),
         FaultKind::BadRange => said(
             Code::Unreadable,

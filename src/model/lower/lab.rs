@@ -5,7 +5,7 @@ use std::sync::Arc;
 use super::quantities::half_width;
 use super::{Lowering, statement_span, statements};
 use crate::finding::Anchor;
-use crate::model::{Balance, Lab, Stated, Ware};
+use crate::model::{Balance, ConductivityMeter, Lab, Stated, Ware};
 use crate::syntax::tree::{Line, MeterKind, Quantity, Statement};
 use crate::units::Unit;
 
@@ -33,13 +33,23 @@ impl Lowering {
                     tolerance: ware.tolerance.as_ref().map(|given| half_width(given, Some(ware.volume.unit))),
                     class_a: ware.class_a,
                 })),
-                Statement::Meter(meter) => lab.meters.extend(meter.tolerance.given().map(|tolerance| {
+                Statement::Meter(meter) => {
+                    if meter.kind == MeterKind::Conductivity
+                        && let Some(reference) = meter.reference.as_ref().and_then(|slot| slot.given())
+                    {
+                        lab.conductivity_meter = Some(ConductivityMeter {
+                            reference_K: base(reference),
+                            compensation_per_K: meter.compensation.as_ref().and_then(|slot| slot.given()).map(base),
+                        });
+                    }
+                    lab.meters.extend(meter.tolerance.given().map(|tolerance| {
                     let beside: Option<Unit> = match meter.kind {
                         MeterKind::Ph => None,
                         MeterKind::Conductivity | MeterKind::Osmometer => tolerance.unit,
                     };
                     (meter.kind, half_width(tolerance, beside))
-                })),
+                    }));
+                }
                 _ => {}
             }
         }

@@ -3,6 +3,7 @@
 use super::{reference, strong_reference};
 use crate::finding::Anchor;
 use crate::model::{Amount, Dilution, Goal, GoalKind, HalfWidth, Property, Stated};
+use crate::syntax::formula;
 use crate::syntax::tree::{self, Range, Slot, TargetKind};
 use crate::units::{Dimension, Unit};
 
@@ -53,6 +54,7 @@ pub fn property(line: usize, property: &tree::Property) -> Option<Property> {
         Kind::Osmolality => Property::Osmolality,
         Kind::Conductivity => Property::Conductivity,
         Kind::Density => Property::Density,
+        Kind::WaterActivity => Property::WaterActivity,
         Kind::Alkalinity => Property::Alkalinity,
         Kind::Hardness => Property::Hardness,
         Kind::Total(name) => Property::Total(reference(line, name.given()?)),
@@ -131,7 +133,11 @@ fn read_goals(line: usize, target: &tree::Target) -> Option<Vec<Goal>> {
         None => None,
         Some(given) => Some(dilution(line, given)?),
     };
-    let goal = |kind| Goal { kind, at, temperature, diluted: diluted.clone() };
+    let as_formula = match &target.as_formula {
+        None => None,
+        Some(slot) => Some(formula::parse(&slot.given()?.text).ok()?),
+    };
+    let goal = |kind| Goal { kind, at, as_formula: as_formula.clone(), temperature, diluted: diluted.clone() };
     let of_property = |property: &Property, limits: Limits| {
         goal(GoalKind::Property {
             property: property.clone(),

@@ -46,8 +46,9 @@ impl<'t> Builder<'t> {
     }
 
     fn unknown_property(&mut self, node: &Node<'t>) -> Slot<Property> {
-        const PROPERTIES: [&str; 11] = [
-            "pH", "ionic strength", "buffer capacity", "osmolality", "conductivity", "density", "alkalinity", "hardness",
+        const PROPERTIES: [&str; 12] = [
+            "pH", "ionic strength", "buffer capacity", "osmolality", "conductivity", "density", "water activity",
+            "alkalinity", "hardness",
             "total", "free", "saturation index of",
         ];
         let place = span(node);

@@ -53,7 +53,9 @@ impl<'t> Builder<'t> {
             }
         };
         let conditions = self.conditions(node);
-        if let Some(stray) = conditions.as_formula {
+        let Conditions { mut as_formula, at, diluted } = conditions;
+        let is_property = matches!(kind, Some(TargetKind::Property { .. } | TargetKind::Series { .. }));
+        if let Some(stray) = as_formula.take_if(|_| !is_property) {
             let at = match stray {
                 Slot::Given(formula) => formula.span,
                 Slot::Bad(place) => place,
@@ -62,7 +64,7 @@ impl<'t> Builder<'t> {
             self.fault(at, FaultKind::Unexpected);
         }
         match kind {
-            Some(kind) => Slot::Given(Target { span: span(node), kind, at: conditions.at, diluted: conditions.diluted }),
+            Some(kind) => Slot::Given(Target { span: span(node), kind, as_formula, at, diluted }),
             None => Slot::Bad(span(node)),
         }
     }
@@ -70,7 +72,9 @@ impl<'t> Builder<'t> {
     fn target_readings(&self, place: Span) -> Vec<Reading> {
         let written = self.of(place);
         let first = written.split(is_space).next().unwrap_or_default();
-        let properties = ["ionic strength", "osmolality", "conductivity", "density", "saturation", "pH"];
+        let properties = [
+            "ionic strength", "osmolality", "conductivity", "density", "water activity", "alkalinity", "hardness", "saturation", "pH",
+        ];
         crate::syntax::spelling::nearest(first, properties)
             .map(|word| reading(Span::new(place.start, place.start + first.len()), word, ""))
             .into_iter()
@@ -120,6 +124,7 @@ impl<'t> Builder<'t> {
             "osmolality" => PropertyKind::Osmolality,
             "conductivity" => PropertyKind::Conductivity,
             "density" => PropertyKind::Density,
+            "water activity" => PropertyKind::WaterActivity,
             "alkalinity" => PropertyKind::Alkalinity,
             "hardness" => PropertyKind::Hardness,
             "total" => PropertyKind::Total(self.measured_name(&inner, word.end, Expected::ConstituentName)),
@@ -361,7 +366,7 @@ fn wanted(property: &PropertyKind) -> Option<(Wanted, Wanted)> {
         };
     }
     match property {
-        PropertyKind::Ph | PropertyKind::SaturationIndex(_) => None,
+        PropertyKind::Ph | PropertyKind::WaterActivity | PropertyKind::SaturationIndex(_) => None,
         PropertyKind::IonicStrength => units!("an amount concentration or a molality, as in 150 mmol/L", AmountConcentration | Molality),
         PropertyKind::BufferCapacity => {
             units!("an amount concentration (per unit of pH), as in 8 mmol/L", AmountConcentration | Molality)

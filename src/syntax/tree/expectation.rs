@@ -11,6 +11,8 @@ pub struct Target {
     pub span: Span,
     /// What must be reached.
     pub kind: TargetKind,
+    /// `as CaCO3`.
+    pub as_formula: Option<Slot<FormulaText>>,
     /// `at 37 °C`.
     pub at: Option<Slot<Quantity>>,
     /// `diluted 10-fold [with NAME]`.
@@ -73,6 +75,8 @@ pub enum PropertyKind {
     Conductivity,
     /// Density.
     Density,
+    /// Water activity.
+    WaterActivity,
     /// Alkalinity.
     Alkalinity,
     /// Hardness.
