@@ -7,7 +7,7 @@ use std::process::{Command, Output, Stdio};
 
 use camino::Utf8PathBuf;
 use scruple::model::NameKey;
-use scruple::report::{Selection, excerpt, finding_reports, found, library_sheets, sheet, solution_report, solution_sheet};
+use scruple::report::{Selection, excerpt, finding_reports, found, library_sheets, reasons_sheet, sheet, solution_report, solution_sheet};
 use scruple::workspace::Workspace;
 use serde_json::Value;
 
@@ -316,6 +316,7 @@ fn what_people_read_is_as_it_was_reviewed() {
     insta::assert_snapshot!("check", anstream::adapter::strip_str(&excerpts.join("\n\n")).to_string());
     let of = |name: &str| selection.solutions().find(|subject| subject.is_called(&NameKey::new(name))).unwrap();
     insta::assert_snapshot!("show", sheet::text(&solution_sheet(&of("Column eluent")), 100));
+    insta::assert_snapshot!("show_reasons", sheet::text(&reasons_sheet(&of("Column eluent")), 100));
     insta::assert_snapshot!("show_without_values", sheet::text(&solution_sheet(&of("Diluted acid")), 100));
     insta::assert_snapshot!("show_markdown", sheet::markdown(&solution_sheet(&of("Chelator stock"))));
     let pretty = |value: Value| serde_json::to_string_pretty(&value).unwrap();

@@ -199,17 +199,17 @@ impl State {
         &self.settings
     }
 
+    /// The activity model that gives the second view: Davies up to 0.5 mol/kg, the Bates–Guggenheim term alone beyond.
+    pub fn alternative_model(&self) -> ActivityModel {
+        if self.ionic_strength_mol_per_kg <= 0.5 { ActivityModel::Davies } else { ActivityModel::BatesGuggenheim }
+    }
+
     /// pH by a second activity model: Davies up to 0.5 mol/kg, the Bates–Guggenheim term alone beyond. A second solve.
     ///
     /// # Errors
     /// As [`Chemistry::solve`].
     pub fn alternative_pH(&self) -> Result<f64, Failure> {
-        let model = if self.ionic_strength_mol_per_kg <= 0.5 {
-            ActivityModel::Davies
-        } else {
-            ActivityModel::BatesGuggenheim
-        };
-        let settings = Settings { model, ..self.settings };
+        let settings = Settings { model: self.alternative_model(), ..self.settings };
         Ok(self.chemistry.solve_ions(&self.mixture, self.temperature_K, &settings)?.pH())
     }
 

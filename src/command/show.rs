@@ -6,7 +6,9 @@ use super::paths::open;
 use super::terminal::Terminal;
 use super::{Ending, Trouble};
 use crate::model::NameKey;
-use crate::report::{SHOW_SCHEMA, Subject, sheet, solution_report, solution_sheet};
+use crate::report::{
+    SHOW_SCHEMA, Sheet, Subject, reasons_sheet, sheet, solution_report, solution_report_with_reasons, solution_sheet,
+};
 use crate::workspace::Origin;
 
 /// Show what comes out of recipes: what to weigh, pH, states, verdicts
@@ -18,6 +20,9 @@ pub(super) struct Show {
     /// Only the solution of this name; may be given several times
     #[arg(long, value_name = "NAME")]
     solution: Vec<String>,
+    /// Also say how the numbers came about: constants and their sources, activity coefficients, balances
+    #[arg(long)]
+    reasons: bool,
     /// How solutions are written
     #[arg(long, value_enum, default_value_t = Format::Text)]
     format: Format,
@@ -37,6 +42,15 @@ enum Format {
 }
 
 impl Show {
+    /// The sheets of a solution, in the order in which they are read.
+    fn sheets(&self, subject: &Subject) -> Vec<Sheet> {
+        let mut sheets = vec![solution_sheet(subject)];
+        if self.reasons {
+            sheets.push(reasons_sheet(subject));
+        }
+        sheets
+    }
+
     pub fn run(&self, terminal: &Terminal) -> Result<Ending, Trouble> {
         if self.schema {
             terminal.print_raw(SHOW_SCHEMA)?;
@@ -52,14 +66,17 @@ impl Show {
         }
         let subjects = all.iter().filter(|subject| wanted.is_empty() || wanted.iter().any(|key| subject.is_called(key)));
         match self.format {
-            Format::Json => terminal.print_json(&subjects.map(solution_report).collect::<Vec<_>>())?,
+            Format::Json => {
+                let report = if self.reasons { solution_report_with_reasons } else { solution_report };
+                terminal.print_json(&subjects.map(report).collect::<Vec<_>>())?;
+            }
             Format::Text => {
                 let width = terminal.width();
-                let sheets: Vec<String> = subjects.map(|subject| sheet::text(&solution_sheet(subject), width)).collect();
+                let sheets: Vec<String> = subjects.flat_map(|subject| self.sheets(subject)).map(|written| sheet::text(&written, width)).collect();
                 terminal.print_raw(&sheets.join("\n\n"))?;
             }
             Format::Markdown => {
-                let sheets: Vec<String> = subjects.map(|subject| sheet::markdown(&solution_sheet(subject))).collect();
+                let sheets: Vec<String> = subjects.flat_map(|subject| self.sheets(subject)).map(|written| sheet::markdown(&written)).collect();
                 terminal.print_raw(&sheets.join("\n"))?;
             }
         }

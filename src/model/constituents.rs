@@ -41,6 +41,8 @@ pub struct Constituents {
     pub defined_by: HashMap<ComponentId, DefinitionKey>,
     /// For each constant, where it comes from and the place of its line.
     pub constants: HashMap<ConstantId, (DefinitionKey, Anchor, Option<String>)>,
+    /// For each pair with an interaction coefficient, the smaller species first, the same.
+    pub interactions: HashMap<(SpeciesId, SpeciesId), (DefinitionKey, Anchor, Option<String>)>,
     formulas: HashMap<NameKey, Formula>,
     /// What is wrong with the definitions.
     pub findings: Vec<(DefinitionKey, Finding)>,
@@ -155,6 +157,7 @@ struct Builder {
     by_substance: HashMap<DefinitionKey, ComponentId>,
     defined_by: HashMap<ComponentId, DefinitionKey>,
     constants: HashMap<ConstantId, (DefinitionKey, Anchor, Option<String>)>,
+    interactions: HashMap<(SpeciesId, SpeciesId), (DefinitionKey, Anchor, Option<String>)>,
     charges: HashMap<ComponentId, i32>,
     findings: Vec<(DefinitionKey, Finding)>,
 }
@@ -187,6 +190,7 @@ impl Builder {
             by_substance: HashMap::new(),
             defined_by: HashMap::new(),
             constants: HashMap::new(),
+            interactions: HashMap::new(),
             charges: HashMap::new(),
             findings: Vec::new(),
         }
@@ -247,6 +251,7 @@ impl Builder {
             by_substance: self.by_substance,
             defined_by: self.defined_by,
             constants: self.constants,
+            interactions: self.interactions,
             formulas,
             findings: self.findings,
         }
@@ -433,14 +438,12 @@ impl Builder {
     fn add_interaction(&mut self, key: &DefinitionKey, interaction: &Interaction) {
         let Some(one) = self.species_of(key, interaction.constant.of.as_ref()) else { return };
         match self.by_name.get(&interaction.partner.key).and_then(|partner| partner.species) {
-            Some(other) => self.chemistry.add_interaction(
-                one,
-                other,
-                chemistry::Interaction {
-                    epsilon_kg_per_mol: interaction.epsilon,
-                    uncertainty: interaction.constant.uncertainty.unwrap_or(0.0),
-                },
-            ),
+            Some(other) => {
+                let (epsilon_kg_per_mol, uncertainty) = (interaction.epsilon, interaction.constant.uncertainty.unwrap_or(0.0));
+                self.chemistry.add_interaction(one, other, chemistry::Interaction { epsilon_kg_per_mol, uncertainty });
+                let from = (key.clone(), interaction.constant.at, interaction.constant.source.clone());
+                self.interactions.insert((one.min(other), one.max(other)), from);
+            }
             None => self.findings.push((key.clone(), unknown_partner(&interaction.partner))),
         }
     }

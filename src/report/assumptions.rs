@@ -1,7 +1,8 @@
 //! What the numbers of a sheet take for granted, one sentence each.
 
 use super::Subject;
-use crate::chemistry::{ActivityModel, State, Warning};
+use super::reasons::model_name;
+use crate::chemistry::{State, Warning};
 use crate::evaluate::{DEFAULT_TEMPERATURE_K, Outcome};
 use crate::units::format;
 
@@ -45,11 +46,7 @@ fn temperature(subject: &Subject, outcome: &Outcome) -> String {
 }
 
 fn model(state: &State) -> String {
-    let model = match state.settings().model {
-        ActivityModel::Sit => "specific ion interaction theory",
-        ActivityModel::BatesGuggenheim => "the Bates–Guggenheim convention",
-        ActivityModel::Davies => "the Davies equation",
-    };
+    let model = model_name(state.settings().model);
     format!("Activity coefficients follow {model}; pH is −log a(H⁺) on the molality scale.")
 }
 

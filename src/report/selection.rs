@@ -6,7 +6,7 @@ use camino::Utf8PathBuf;
 
 use crate::evaluate::Member;
 use crate::finding::{Anchor, Level};
-use crate::model::{Block, DefinitionKey, NameKey, Recipe};
+use crate::model::{Block, Constituents, DefinitionKey, NameKey, Recipe};
 use crate::text::{Columns, FileId, Position, Span};
 use crate::workspace::{Checked, FileState, Located, Origin, Snapshot};
 
@@ -134,6 +134,16 @@ impl<'a> Subject<'a> {
     /// The line on which the solution's header stands, counted from 1.
     pub fn header_line(&self) -> usize {
         self.line(self.block.header_anchor())
+    }
+
+    /// File and line of the header, as the reader knows them.
+    pub fn place(&self) -> String {
+        format!("{}, line {}", self.selection.name(&self.file.path), self.header_line())
+    }
+
+    /// The chemistry of the root that the file belongs to, with its names.
+    pub fn constituents(&self) -> Arc<Constituents> {
+        self.selection.snapshot.constituents(self.file.id)
     }
 
     fn position(&self, offset: usize) -> Position {

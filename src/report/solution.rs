@@ -5,6 +5,7 @@ use serde::Serialize;
 use super::cautions::{Hazard, hazards};
 use super::finding::{FindingReport, finding_report};
 use super::number::{celsius, number};
+use super::reasons::{ReasonsReport, reasons_report};
 use super::Subject;
 use crate::chemistry::{Failure, State};
 use crate::evaluate::{LineOutcome, Outcome, Role, SetPoint, Verdict, hardness_mol_per_L};
@@ -47,6 +48,7 @@ pub struct SolutionReport {
     pub expectations: Vec<ExpectationReport>,
     pub hazards: Vec<Hazard>,
     pub findings: Vec<FindingReport>,
+    pub reasons: Option<ReasonsReport>,
 }
 
 #[derive(Debug, Serialize)]
@@ -145,7 +147,12 @@ pub(super) fn conductivity(state: &State) -> Option<f64> {
     (conductivity.unknown_share <= MOST_UNKNOWN).then_some(conductivity.value_S_per_m).and_then(number)
 }
 
-/// Everything that is known of a solution.
+/// The same, with how the numbers came about.
+pub fn solution_report_with_reasons(subject: &Subject) -> SolutionReport {
+    SolutionReport { reasons: reasons_report(subject), ..solution_report(subject) }
+}
+
+/// Everything that is known of a solution, its reasons left out.
 pub fn solution_report(subject: &Subject) -> SolutionReport {
     let outcome = subject.member.outcome.as_deref();
     let finished = outcome.map(|outcome| &outcome.finished);
@@ -198,6 +205,7 @@ pub fn solution_report(subject: &Subject) -> SolutionReport {
         expectations: expectations(subject, outcome),
         hazards: outcome.map(|outcome| hazards(subject, outcome)).unwrap_or_default(),
         findings: subject.findings().map(|located| finding_report(subject.selection, subject.file, located)).collect(),
+        reasons: None,
     }
 }
 

@@ -40,7 +40,7 @@ pub fn solution_sheet(subject: &Subject) -> Sheet {
 }
 
 fn identity(subject: &Subject) -> Vec<String> {
-    let mut identity = vec![format!("{}, line {}", subject.selection.name(&subject.file.path), subject.header_line())];
+    let mut identity = vec![subject.place()];
     if let Some(Stated { value: document, .. }) = &subject.recipe.document {
         let mut words = document.code.clone();
         if let Some(revision) = &document.revision {

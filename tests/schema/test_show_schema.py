@@ -45,7 +45,7 @@ class ShowSchema(unittest.TestCase):
         validator = Draft202012Validator(strict)
         for folder in SHOWN:
             with self.subTest(folder=folder):
-                printed = json.loads(run("show", str(TESTS / folder), "--format", "json"))
+                printed = json.loads(run("show", str(TESTS / folder), "--reasons", "--format", "json"))
                 self.assertTrue(printed)
                 for error in validator.iter_errors(printed):
                     self.fail(f"{error.json_path}: {error.message}")

@@ -1,5 +1,6 @@
 //! Checks of the core against published values and against itself.
 
+mod account;
 mod activity;
 mod buffering;
 mod conductivity;
