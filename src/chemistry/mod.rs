@@ -19,6 +19,7 @@ mod sensitivity;
 mod account;
 mod buffering;
 mod conductivity;
+pub mod coupled;
 pub mod targets;
 
 pub use alkalinity::ALKALINITY_END_POINT_pH;

@@ -2,6 +2,7 @@
 
 use proptest::prelude::*;
 
+use crate::chemistry::coupled::*;
 use crate::chemistry::targets::*;
 
 type Never = std::convert::Infallible;
@@ -39,4 +40,35 @@ fn a_failure_of_the_function_ends_the_search() {
     assert_eq!(find_root(f, 0.0, 1.0, 1e-9, 60), Err(TargetFailure::Evaluation("no")));
     let nan = |_: f64| Ok::<_, Never>(f64::NAN);
     assert_eq!(find_root(nan, 0.0, 1.0, 1e-9, 60), Err(TargetFailure::NotFinite));
+}
+
+proptest! {
+    #[test]
+    fn coupled_roots_are_found_from_rough_slopes(
+        size in 1..6_usize,
+        coupling in proptest::collection::vec(-0.15..0.15_f64, 36),
+        bend in 0.0..0.3_f64,
+        roots in proptest::collection::vec(0.7..1.3_f64, 6),
+    ) {
+        let root = &roots[..size];
+        let f = |x: &[f64]| {
+            let linear = |row: usize, at: &[f64]| (0..size).map(|column| coupling[6 * row + column] * at[column]).sum::<f64>() + at[row];
+            let bent = |at: f64| bend * libm::sin(at);
+            Ok::<_, Never>((0..size).map(|row| linear(row, x) + bent(x[row]) - linear(row, root) - bent(root[row])).collect())
+        };
+        // Slopes that know nothing of the coupling.
+        let slopes: Vec<Vec<f64>> = (0..size).map(|row| (0..size).map(|column| f64::from(u8::from(row == column))).collect()).collect();
+        let found = find_coupled_roots(f, vec![1.0; size], &slopes, 1e-12, 60).unwrap().unwrap();
+        for (found, root) in found.iter().zip(root) {
+            prop_assert!((found - root).abs() < 1e-9, "{found} for {root}");
+        }
+    }
+}
+
+#[test]
+fn coupled_functions_without_a_root_come_to_no_end() {
+    let f = |x: &[f64]| Ok::<_, Never>(vec![x[0] * x[0] + 1.0]);
+    assert_eq!(find_coupled_roots(f, vec![1.0], &[vec![2.0]], 1e-12, 60), Ok(None));
+    let fails = |_: &[f64]| Err("no");
+    assert_eq!(find_coupled_roots(fails, vec![1.0], &[vec![1.0]], 1e-12, 60), Err("no"));
 }

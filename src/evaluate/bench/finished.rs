@@ -1,10 +1,21 @@
 //! Amounts that only the finished solution can tell: pairs, and what is added up to a property.
 
-use super::{Bench, MAX_ROUNDS, MOST_TITRANT, PH_TOLERANCE, Run, Sought};
+use super::settle::{SETTLED, flattened, minus_unity, scaled, surplus};
+use super::{Bench, MOST_TITRANT, PH_TOLERANCE, Run, Sought};
+use crate::chemistry::coupled::find_coupled_roots;
 use crate::evaluate::Refusal;
 use crate::evaluate::plan::Work;
 use crate::finding::{Anchor, Code, Finding};
 use crate::model::GoalKind;
+
+/// How well an amount is met at first sight, relative to it.
+const ROUGHLY: f64 = 1e-4;
+
+/// How well an amount is met in the end, relative to it.
+const EXACTLY: f64 = 1e-14;
+
+/// Rounds in which amounts are met one after the other, where they are not met all together.
+const MAX_ROUNDS: usize = 80;
 
 impl Bench<'_, '_> {
     /// Finds the amounts that only the finished solution can tell (pairs, properties), all together.
@@ -21,20 +32,74 @@ impl Bench<'_, '_> {
             sought.push(Sought { number, line, goal, property, aim: *aim, is_pair });
         }
         if sought.is_empty() {
-            return self.settle(unknowns);
+            return self.settle(unknowns, SETTLED);
         }
-        // One after the other, and again until none moves the others: they are coupled by the ionic strength only.
+        // Roughly and one after the other at first, which tells what is out of reach; then exactly and all together.
+        for one in &sought {
+            self.meet(one, None, ROUGHLY, unknowns)?;
+        }
+        let roughly = unknowns.to_vec();
+        if let Some(run) = self.meet_together(&sought, unknowns) {
+            return Ok(run);
+        }
+        unknowns.copy_from_slice(&roughly);
+        self.meet_in_turn(&sought, unknowns)
+    }
+
+    /// Meets all goals together, and settles how much is made with them, from where they are roughly met; none where that does
+    /// not come to an end.
+    fn meet_together(&self, sought: &[Sought], unknowns: &mut [f64]) -> Option<Run> {
+        let start = self.settle(unknowns, ROUGHLY).ok()?;
+        let amounts = sought.iter().map(|one| unknowns.get(one.number).copied().unwrap_or(0.0).abs().max(1e-12));
+        let scale: Vec<f64> = amounts.chain(flattened(&start.finals)).collect();
+        let count = sought.len();
+        let mut last = None;
+        let mut miss = |x: &[f64]| -> Result<Vec<f64>, Refusal> {
+            for ((one, x), scale) in sought.iter().zip(x).zip(&scale) {
+                if let Some(slot) = unknowns.get_mut(one.number) {
+                    *slot = x * scale;
+                }
+            }
+            let (finals, finals_scale) = (x.get(count..).unwrap_or_default(), scale.get(count..).unwrap_or_default());
+            let run = self.run(&scaled(finals, finals_scale), unknowns)?;
+            let mut y = Vec::with_capacity(scale.len());
+            for one in sought {
+                let size = if one.aim == 0.0 { 1.0 } else { one.aim.abs() };
+                y.push((self.value(&run.beaker.mixture, one.goal, one.property, one.line.at)? - one.aim) / size);
+            }
+            y.extend(surplus(&run.finals, finals, finals_scale));
+            last = Some(run);
+            Ok(y)
+        };
+        let x = vec![1.0; scale.len()];
+        let here = miss(&x).ok()?;
+        let mut slopes = vec![vec![0.0; scale.len()]; count];
+        slopes.extend(minus_unity(scale.len() - count, count));
+        for column in 0..count {
+            let mut aside = x.clone();
+            aside.iter_mut().skip(column).take(1).for_each(|x| *x += ROUGHLY);
+            let there = miss(&aside).ok()?;
+            for (row, (there, here)) in slopes.iter_mut().zip(there.iter().zip(&here)) {
+                row.iter_mut().skip(column).take(1).for_each(|slope| *slope += (there - here) / ROUGHLY);
+            }
+        }
+        find_coupled_roots(miss, x, &slopes, SETTLED, 40).ok().flatten()?;
+        last
+    }
+
+    /// Meets one goal after the other, and again until none moves the others.
+    fn meet_in_turn(&self, sought: &[Sought], unknowns: &mut [f64]) -> Result<Run, Refusal> {
         let mut last = vec![f64::NAN; sought.len()];
         for round in 0..MAX_ROUNDS {
             let mut moved = 0.0f64;
             for (one, last) in sought.iter().zip(last.iter_mut()) {
                 let guess = if last.is_finite() { Some(*last) } else { None };
-                let x = self.meet(one, guess, unknowns)?;
+                let x = self.meet(one, guess, EXACTLY, unknowns)?;
                 moved = moved.max(if last.is_finite() { (x - *last).abs() / x.abs().max(1e-12) } else { f64::INFINITY });
                 *last = x;
             }
             if sought.len() == 1 || moved < 1e-12 || (round > 20 && moved < 1e-9) {
-                return self.settle(unknowns);
+                return self.settle(unknowns, SETTLED);
             }
         }
         let at = sought.first().map_or(Anchor::default(), |one| one.line.at);
@@ -44,24 +109,24 @@ impl Bench<'_, '_> {
     }
 
     /// Meets one goal of the finished solution while the other unknowns stay. `guess` is where it was met before.
-    fn meet(&self, one: &Sought, guess: Option<f64>, unknowns: &mut [f64]) -> Result<f64, Refusal> {
+    fn meet(&self, one: &Sought, guess: Option<f64>, tolerance: f64, unknowns: &mut [f64]) -> Result<f64, Refusal> {
         let Sought { number, line, goal, property, aim, is_pair } = *one;
         let mut miss = |x: f64| -> Result<f64, Refusal> {
             if let Some(slot) = unknowns.get_mut(number) {
                 *slot = x;
             }
-            let run = self.settle(unknowns)?;
+            let run = self.settle(unknowns, 0.01 * tolerance.max(100.0 * SETTLED))?;
             Ok(self.value(&run.beaker.mixture, goal, property, line.at)? - aim)
         };
         let x = if is_pair {
             match guess.map(|guess| self.bracket(&mut miss, guess, 1.0)).transpose()?.flatten() {
-                Some((low, high)) => self.root(&mut miss, low, high, 1e-14, line.at)?,
+                Some((low, high)) => self.root(&mut miss, low, high, tolerance, line.at)?,
                 None => {
                     let (at_zero, at_one) = (miss(0.0)?, miss(1.0)?);
                     if at_zero.abs() > PH_TOLERANCE && at_one.abs() > PH_TOLERANCE && (at_zero > 0.0) == (at_one > 0.0) {
                         return Err(self.pair_out_of_reach(line, goal, property, aim + at_zero, aim + at_one));
                     }
-                    self.root(&mut miss, 0.0, 1.0, 1e-14, line.at)?
+                    self.root(&mut miss, 0.0, 1.0, tolerance, line.at)?
                 }
             }
         } else {
@@ -91,7 +156,7 @@ impl Bench<'_, '_> {
                     }
                 }
             };
-            self.root(&mut miss, low, high, 1e-14 * high, line.at)?
+            self.root(&mut miss, low, high, tolerance * high, line.at)?
         };
         miss(x)?;
         Ok(x)

@@ -4,11 +4,12 @@ mod finished;
 mod outcome;
 mod ph;
 mod refusals;
+mod settle;
 mod volume;
 
 use super::found;
 use super::goods::{Goods, state_of};
-use super::plan::{Dose, Extent, Finals, Planned, Work, plan};
+use super::plan::{Dose, Finals, Planned, Work, plan};
 use super::property::{Question, property_value};
 use super::verdicts::verdicts;
 use super::{Context, Outcome, Refusal, SetPoint};
@@ -17,9 +18,6 @@ use crate::chemistry::{Mixture, State};
 use crate::finding::{Anchor, Code, Finding};
 use crate::model::{Action, Block, Goal, GoalKind, Property, Recipe};
 pub(super) use volume::diluted;
-
-/// Rounds of settling how much is made; each closes in by a factor of ten or more.
-const MAX_ROUNDS: usize = 80;
 
 /// A pH is met when it is as near as this.
 const PH_TOLERANCE: f64 = 1e-9;
@@ -148,54 +146,6 @@ impl Bench<'_, '_> {
                     .into())
             }
         }
-    }
-
-    /// Runs the lines until how much is made comes out as what was put in.
-    fn settle(&self, unknowns: &[f64]) -> Result<Run, Refusal> {
-        let parts = self.plan.last().map_or(1, |line| line.part + 1);
-        let mut finals: Vec<Finals> = (0..parts).map(|part| self.first_guess(part)).collect();
-        let depends = self.plan.iter().any(|line| match &line.work {
-            Work::Add { dose, .. } | Work::Pair { total: dose, .. } => !matches!(dose, Dose::Fixed(_)),
-            _ => false,
-        });
-        let mut last_change = f64::INFINITY;
-        for _ in 0..MAX_ROUNDS {
-            let run = self.run(&finals, unknowns)?;
-            let change = run
-                .finals
-                .iter()
-                .zip(&finals)
-                .map(|(new, old)| {
-                    let relative = |new: f64, old: f64| ((new - old) / new.abs().max(1e-30)).abs();
-                    relative(new.litres, old.litres)
-                        .max(relative(new.water_kg, old.water_kg))
-                        .max(relative(new.kilograms, old.kilograms))
-                })
-                .fold(0.0, f64::max);
-            // Rounding keeps the last digits moving; once they no longer settle further they are as good as they get.
-            if !depends || change < 1e-12 || (change < 1e-9 && change >= last_change) {
-                return Ok(run);
-            }
-            last_change = change;
-            finals = run.finals;
-        }
-        let at = self.plan.first().map_or(Anchor::default(), |line| line.at);
-        Err(Finding::new(Code::NoSolutionFound, at, "How much is made cannot be settled: the concentrations leave no room for the liquid.")
-            .help("Check the concentrations, or add a make-up line.")
-            .into())
-    }
-
-    fn first_guess(&self, part: usize) -> Finals {
-        let mut kilograms = 0.0;
-        for line in self.plan.iter().filter(|line| line.part <= part) {
-            match &line.work {
-                Work::Add { dose: Dose::Fixed(mass), .. } => kilograms += mass,
-                Work::FillTo { extent: Extent::Litres(litres), .. } => kilograms = *litres,
-                Work::FillTo { extent: Extent::Kilograms(mass), .. } => kilograms = *mass,
-                _ => {}
-            }
-        }
-        Finals { litres: kilograms, water_kg: 0.97 * kilograms, kilograms }
     }
 
     /// One run through the lines, given how much each part comes to.

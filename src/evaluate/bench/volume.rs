@@ -38,18 +38,11 @@ impl Bench<'_, '_> {
                 if before > litres * 1.0001 {
                     return Err(overfull(at, &format::volume(before, 4), &format::volume(litres, 4)));
                 }
-                let mut mass = (litres - before).max(0.0) * density;
-                for _ in 0..40 {
+                closed_in((litres - before).max(0.0) * density, density, 1e-12 * litres, |mass| {
                     let mut filled = beaker.mixture.clone();
                     filled.add(&goods.per_kg, mass);
-                    let miss = litres - self.volume(&filled, at)?;
-                    let next = (mass + miss * density).max(0.0);
-                    if (next - mass).abs() <= 1e-12 * litres {
-                        return Ok(next);
-                    }
-                    mass = next;
-                }
-                Ok(mass)
+                    Ok(litres - self.volume(&filled, at)?)
+                })
             }
         }
     }
@@ -78,18 +71,40 @@ pub(in crate::evaluate) fn diluted(
         }
     };
     let target = fold * volume;
-    let mut mass = (target - volume) * density;
-    for _ in 0..40 {
+    let mass = closed_in((target - volume) * density, density, 1e-13 * target, |mass| {
         let mut filled = mixture.clone();
         filled.add(&diluent, mass);
         let now = volume_of(&filled, temperature_K, context).ok_or_else(|| fail("The diluted solution's volume is not known."))?;
-        let next = (mass + (target - now) * density).max(0.0);
-        if (next - mass).abs() <= 1e-13 * target {
-            return Ok(filled);
-        }
-        mass = next;
-    }
+        Ok(target - now)
+    })?;
     let mut filled = mixture.clone();
     filled.add(&diluent, mass);
     Ok(filled)
+}
+
+/// The mass (kg) that leaves no volume (L) missing, from a guess, by secants: a kilogram takes up nearly its volume.
+fn closed_in(
+    guess: f64,
+    density: f64,
+    tolerance: f64,
+    mut missing: impl FnMut(f64) -> Result<f64, Refusal>,
+) -> Result<f64, Refusal> {
+    let (mut mass, mut slope) = (guess, 1.0 / density);
+    let mut last: Option<(f64, f64)> = None;
+    for _ in 0..40 {
+        let miss = missing(mass)?;
+        if let Some((mass_before, miss_before)) = last {
+            let between = (miss_before - miss) / (mass - mass_before);
+            if between.is_finite() && between > 0.1 / density {
+                slope = between;
+            }
+        }
+        let next = (mass + miss / slope).max(0.0);
+        if (next - mass).abs() <= tolerance {
+            return Ok(next);
+        }
+        last = Some((mass, miss));
+        mass = next;
+    }
+    Ok(mass)
 }
