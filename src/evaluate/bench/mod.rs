@@ -7,6 +7,8 @@ mod refusals;
 mod settle;
 mod volume;
 
+use std::cell::RefCell;
+
 use super::found;
 use super::goods::{Goods, state_of};
 use super::plan::{Dose, Finals, Planned, Work, plan};
@@ -62,7 +64,7 @@ pub(super) fn evaluate(
 ) -> Result<Outcome, Refusal> {
     let (temperature_K, half_width_K) = context.made_at_K(recipe);
     let plan = plan(recipe, index, temperature_K, context)?;
-    let bench = Bench { plan: &plan, temperature_K, context };
+    let bench = Bench { plan: &plan, temperature_K, context, taken: RefCell::new(vec![None; plan.len()]) };
     bench.has_extent(block)?;
     let mut unknowns = vec![0.0; plan.len()];
     let run = bench.meet_finished_goals(&mut unknowns)?;
@@ -89,6 +91,8 @@ struct Bench<'a, 'b> {
     plan: &'b [Planned],
     temperature_K: f64,
     context: &'b Context<'a>,
+    /// Which titrant a line that sets the pH last took and how much, kg: the next run needs nearly the same.
+    taken: RefCell<Vec<Option<(usize, f64)>>>,
 }
 
 impl Bench<'_, '_> {
@@ -181,7 +185,7 @@ impl Bench<'_, '_> {
                     beaker.add(goods, masses[0]);
                 }
                 Work::SetPh { titrants, goal, aim, window, liquid } => {
-                    let (which, mass, point) = self.set(&beaker, titrants, goal, *aim, *window, *liquid, line)?;
+                    let (which, mass, point) = self.set(&beaker, titrants, goal, *aim, *window, *liquid, number)?;
                     if let (Some(slot), Some(titrant)) = (masses.get_mut(which), titrants.get(which)) {
                         *slot = mass;
                         beaker.add(titrant, mass);

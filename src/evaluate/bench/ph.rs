@@ -18,8 +18,9 @@ impl Bench<'_, '_> {
         aim: f64,
         window: Option<(f64, f64)>,
         liquid: Option<usize>,
-        line: &Planned,
+        number: usize,
     ) -> Result<(usize, f64, SetPoint), Refusal> {
+        let Some(line) = self.plan.get(number) else { return Err(Refusal::reported()) };
         if beaker.kilograms <= 0.0 && liquid.is_none() {
             return Err(self.nothing_to_set(line));
         }
@@ -62,19 +63,28 @@ impl Bench<'_, '_> {
             let beaker = with(titrant, mass)?;
             Ok(self.value(&beaker.mixture, goal, &Property::Ph, line.at)? - aim)
         };
-        let scale = start.kilograms;
-        let (mut low, mut high, mut furthest) = (0.0, 1e-4 * scale, before);
-        loop {
-            match miss(high) {
-                Ok(value) if (value >= 0.0) == upwards => break,
-                Ok(value) if high <= MOST_TITRANT * scale => {
-                    furthest = value + aim;
-                    (low, high) = (high, 3.0 * high);
+        let near = self.taken.borrow().get(number).copied().flatten().filter(|(last, _)| *last == which);
+        let (low, high) = match near.and_then(|(_, mass)| narrow(mass, &miss)) {
+            Some(bracket) => bracket,
+            None => {
+                let scale = start.kilograms;
+                let (mut low, mut high, mut furthest) = (0.0, 1e-4 * scale, before);
+                loop {
+                    match miss(high) {
+                        Ok(value) if (value >= 0.0) == upwards => break (low, high),
+                        Ok(value) if high <= MOST_TITRANT * scale => {
+                            furthest = value + aim;
+                            (low, high) = (high, 3.0 * high);
+                        }
+                        _ => return Err(self.out_of_reach(line, goal, titrant, before, aim, furthest)),
+                    }
                 }
-                _ => return Err(self.out_of_reach(line, goal, titrant, before, aim, furthest)),
             }
-        }
+        };
         let mass = self.root(miss, low, high, 1e-13 * high, line.at)?;
+        if let Some(slot) = self.taken.borrow_mut().get_mut(number) {
+            *slot = Some((which, mass));
+        }
         let state = self.state(&with(titrant, mass)?, line.at)?;
         Ok((which, mass, point(state)))
     }
@@ -99,4 +109,13 @@ impl Bench<'_, '_> {
         filled.add(goods, mass);
         Ok(filled)
     }
+}
+
+/// A narrow bracket around a mass that was right before; none where what is missed does not change its sign there.
+fn narrow(mass: f64, miss: impl Fn(f64) -> Result<f64, Refusal>) -> Option<(f64, f64)> {
+    [1e-6, 1e-3, 0.03].into_iter().find_map(|width| {
+        let (low, high) = (mass * (1.0 - width), mass * (1.0 + width));
+        let (at_low, at_high) = (miss(low).ok()?, miss(high).ok()?);
+        ((at_low > 0.0) != (at_high > 0.0)).then_some((low, high))
+    })
 }
