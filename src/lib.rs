@@ -14,6 +14,7 @@ pub mod library;
 pub mod evaluate;
 pub mod advice;
 pub mod workspace;
+pub mod review;
 pub mod editor;
 pub mod report;
 pub mod server;

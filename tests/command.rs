@@ -8,6 +8,7 @@ use std::process::{Command, Output, Stdio};
 use camino::Utf8PathBuf;
 use scruple::model::NameKey;
 use scruple::report::{Selection, excerpt, finding_reports, found, library_sheets, reasons_sheet, sheet, solution_report, solution_sheet};
+use scruple::text::Columns;
 use scruple::workspace::Workspace;
 use serde_json::Value;
 
@@ -321,7 +322,7 @@ fn what_people_read_is_as_it_was_reviewed() {
     insta::assert_snapshot!("show_markdown", sheet::markdown(&solution_sheet(&of("Chelator stock"))));
     let pretty = |value: Value| serde_json::to_string_pretty(&value).unwrap();
     insta::assert_snapshot!("show_json", pretty(serde_json::to_value(solution_report(&of("Column eluent"))).unwrap()));
-    insta::assert_snapshot!("check_json", pretty(serde_json::to_value(finding_reports(&selection)).unwrap()));
+    insta::assert_snapshot!("check_json", pretty(serde_json::to_value(finding_reports(&selection, Columns::Characters)).unwrap()));
     let pages = library_sheets(&found("sodium dihydrogen phosphate dihydrate").unwrap());
     insta::assert_snapshot!("lookup", sheet::text(pages.first().unwrap(), 100));
 }

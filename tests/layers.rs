@@ -17,13 +17,14 @@ const MAY_USE: &[(&str, &[&str])] = &[
     ("evaluate", &["text", "units", "chemistry", "finding", "syntax", "model", "library"]),
     ("advice", &["text", "units", "chemistry", "finding", "syntax", "model", "library", "evaluate"]),
     ("workspace", &["text", "units", "chemistry", "finding", "syntax", "model", "library", "evaluate", "advice"]),
+    ("review", &["text", "units", "chemistry", "finding", "syntax", "model", "evaluate", "workspace"]),
     ("editor", &["text", "units", "chemistry", "finding", "syntax", "model", "library", "evaluate", "advice", "workspace"]),
-    ("report", &["text", "units", "chemistry", "finding", "syntax", "model", "library", "evaluate", "advice", "workspace"]),
+    ("report", &["text", "units", "chemistry", "finding", "syntax", "model", "library", "evaluate", "advice", "workspace", "review"]),
     (
         "server",
         &["text", "units", "chemistry", "finding", "syntax", "model", "library", "evaluate", "advice", "workspace", "editor", "report"],
     ),
-    ("command", &["text", "units", "finding", "syntax", "model", "library", "workspace", "report"]),
+    ("command", &["text", "units", "finding", "syntax", "model", "library", "workspace", "review", "report"]),
 ];
 
 /// Words that may stand only in some places, as paths below `src`.
@@ -38,10 +39,11 @@ const ONLY_IN: &[(&[&str], &[&str])] = &[
     (&["print!(", "println!(", "eprint!(", "eprintln!(", "stdout()", "stderr()"], &["command", "main.rs", "server/mod.rs"]),
     (
         &["std::fs", "fs::read", "fs::write", ".metadata()", "canonicalize"],
-        &["command", "server", "workspace/disk.rs", "workspace/configuration.rs"],
+        &["command", "server", "workspace/disk.rs"],
     ),
     (&["SystemTime", "Instant::now", "std::time"], &["command", "server"]),
     (&["std::env", "env::var"], &["command", "server", "workspace/disk.rs"]),
+    (&["process::Command", "process::{Command"], &["command/git.rs", "server/watchdog.rs"]),
     (&["unsafe "], &[]),
     (&["rand::", "thread_rng"], &[]),
 ];

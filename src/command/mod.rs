@@ -2,9 +2,13 @@
 //! is not formatted), 2 where the command line, a file or a configuration cannot be used.
 
 mod check;
+mod compare;
 mod completions;
 mod explain;
 mod format;
+mod git;
+mod git_drivers;
+mod init;
 mod lookup;
 mod paths;
 mod progress;
@@ -39,10 +43,13 @@ struct Arguments {
 #[derive(Debug, Subcommand)]
 enum Verb {
     Check(check::Check),
+    Compare(compare::Compare),
     Show(show::Show),
     Format(format::Format),
     Lookup(lookup::Lookup),
     Explain(explain::Explain),
+    Init(init::Init),
+    Git(git_drivers::Git),
     Serve(serve::Serve),
     Completions(completions::Completions),
 }
@@ -89,10 +96,13 @@ pub fn run(server: impl FnOnce(Option<&Path>) -> io::Result<i32>) -> i32 {
     let terminal = Terminal::new(arguments.color);
     let ended = match arguments.verb {
         Verb::Check(check) => check.run(&terminal),
+        Verb::Compare(compare) => compare.run(&terminal),
         Verb::Show(show) => show.run(&terminal),
         Verb::Format(format) => format.run(&terminal),
         Verb::Lookup(lookup) => lookup.run(&terminal),
         Verb::Explain(explain) => explain.run(&terminal),
+        Verb::Init(init) => init.run(&terminal),
+        Verb::Git(git) => git.run(&terminal),
         Verb::Serve(serve) => serve.run(server),
         Verb::Completions(completions) => completions.run(&terminal, &mut Arguments::command()),
     };

@@ -1,35 +1,55 @@
 //! From the paths on a command line to the files that a verb speaks of, each read within its root.
 
 use std::collections::BTreeSet;
+use std::sync::Arc;
 
 use camino::{Utf8Path, Utf8PathBuf};
 
 use super::Trouble;
+use super::git::{Commit, Repository};
 use super::progress::watched;
 use crate::report::Selection;
 use crate::text::FileId;
-use crate::workspace::{CONFIGURATION_FILE, ConfigurationError, Progress, Workspace, find_root, is_marked, nested_roots, recipe_files};
+use crate::workspace::{CONFIGURATION_FILE, ConfigurationError, Disk, Progress, Snapshot, Workspace, reached, recipe_files};
 
 /// What was opened.
 pub(super) struct Opened {
     /// The files that the paths name.
     pub selection: Selection,
-    /// What is wrong with the `scruple.toml` of their roots, by its name.
-    pub configuration: Vec<(String, Vec<ConfigurationError>)>,
+    /// What is wrong with the `scruple.toml` of their roots, by its path.
+    pub configuration: Vec<(Utf8PathBuf, Vec<ConfigurationError>)>,
 }
 
 /// Opens files and folders. A file brings its root along, so that it may use others, but only the file itself is spoken of.
 pub(super) fn open(paths: &[String]) -> Result<Opened, Trouble> {
     let progress = Progress::default();
-    watched(&progress, || open_watched(paths, &progress))
+    watched(&progress, || open_watched(&mut Workspace::new(), paths, &progress))
 }
 
-fn open_watched(paths: &[String], progress: &Progress) -> Result<Opened, Trouble> {
+/// Opens files and folders as they are now, to speak only of what changed since a commit and of what depends on that.
+pub(super) fn open_since(paths: &[String], repository: &Repository, commit: &Commit) -> Result<Opened, Trouble> {
     let base = current_folder()?;
-    let mut workspace = Workspace::new();
+    let named = paths.iter().map(|path| absolute(path, &base)).collect::<Result<Vec<_>, _>>()?;
+    let mut workspace = Workspace::reading(Arc::new(repository.files(commit)?));
+    let progress = Progress::default();
+    watched(&progress, || {
+        named.iter().for_each(|path| workspace.open(path));
+        let before = workspace.snapshot_watched(&progress);
+        workspace.read_from(Arc::new(Disk));
+        let mut opened = open_watched(&mut workspace, paths, &progress)?;
+        let blocks = reached(&before, &opened.selection.snapshot);
+        opened.selection = opened.selection.only(blocks);
+        Ok(opened)
+    })
+}
+
+fn open_watched(workspace: &mut Workspace, paths: &[String], progress: &Progress) -> Result<Opened, Trouble> {
+    let base = current_folder()?;
     let mut wanted = Vec::new();
     for path in paths {
-        wanted.push((path, open_path(&mut workspace, path, &base)?));
+        let named = absolute(path, &base)?;
+        workspace.open(&named);
+        wanted.push((path, named));
     }
     let mut snapshot = workspace.snapshot_watched(progress);
     let mut files: BTreeSet<FileId> = BTreeSet::new();
@@ -49,39 +69,21 @@ fn open_watched(paths: &[String], progress: &Progress) -> Result<Opened, Trouble
         }
         files.extend(below);
     }
+    let configuration = configuration_errors(&snapshot, &files);
+    Ok(Opened { selection: Selection::new(snapshot, files, base), configuration })
+}
+
+/// What is wrong with the `scruple.toml` of the roots of some files, by its path.
+pub(super) fn configuration_errors(snapshot: &Snapshot, files: &BTreeSet<FileId>) -> Vec<(Utf8PathBuf, Vec<ConfigurationError>)> {
     let roots: BTreeSet<&Utf8PathBuf> = files.iter().filter_map(|id| snapshot.file(*id)).map(|file| &file.root).collect();
-    let broken: Vec<(Utf8PathBuf, Vec<ConfigurationError>)> = roots
-        .into_iter()
-        .filter_map(|root| snapshot.roots.get(root))
+    let roots = roots.into_iter().filter_map(|root| snapshot.roots.get(root));
+    roots
         .filter(|root| !root.configuration.errors.is_empty())
         .map(|root| (root.path.join(CONFIGURATION_FILE), root.configuration.errors.clone()))
-        .collect();
-    let selection = Selection::new(snapshot, files, base);
-    let configuration = broken.into_iter().map(|(path, errors)| (selection.name(&path), errors)).collect();
-    Ok(Opened { selection, configuration })
+        .collect()
 }
 
-fn open_path(workspace: &mut Workspace, written: &str, base: &Utf8Path) -> Result<Utf8PathBuf, Trouble> {
-    let path = absolute(written, base)?;
-    if path.is_dir() {
-        workspace.open_root(&path, &path);
-        for nested in nested_roots(&path) {
-            workspace.open_root(&nested, &nested);
-        }
-        return Ok(path);
-    }
-    let folder = path.parent().unwrap_or(&path);
-    let root = find_root(&path, folder);
-    if root == folder && !is_marked(&root) {
-        // Nothing marks a library here, so nothing but the file and what it uses is read.
-        workspace.open_file(&path, folder);
-    } else {
-        workspace.open_root(&path, folder);
-    }
-    Ok(path)
-}
-
-fn files_below(snapshot: &crate::workspace::Snapshot, path: &Utf8Path) -> Vec<FileId> {
+fn files_below(snapshot: &Snapshot, path: &Utf8Path) -> Vec<FileId> {
     snapshot.files.values().filter(|file| file.path.starts_with(path)).map(|file| file.id).collect()
 }
 

@@ -89,7 +89,7 @@ impl Show {
         }
         for (file, errors) in &opened.configuration {
             for error in errors {
-                terminal.complain(&format!("{file}: {}", error.message));
+                terminal.complain(&format!("{}: {}", opened.selection.name(file), error.message));
                 ending = Ending::Unusable;
             }
         }

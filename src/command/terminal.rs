@@ -7,9 +7,6 @@ use clap::ColorChoice as ColorOption;
 
 use super::Trouble;
 
-/// The width of the page where there is no terminal to ask.
-const PAGE_WIDTH: usize = 100;
-
 /// Wider lines are hard to read.
 const MOST_WIDTH: usize = 140;
 
@@ -20,6 +17,9 @@ pub(super) struct Terminal {
 }
 
 impl Terminal {
+    /// The width of the page where there is no terminal to ask.
+    pub const PAGE_WIDTH: usize = 100;
+
     /// With colours as the option says; `auto` asks NO_COLOR, CLICOLOR, CLICOLOR_FORCE, TERM and whether it is a terminal.
     pub fn new(color: ColorOption) -> Self {
         let choice = match color {
@@ -33,7 +33,7 @@ impl Terminal {
     /// How many columns there are.
     pub fn width(&self) -> usize {
         let asked = terminal_size::terminal_size_of(io::stdout()).map(|(width, _)| usize::from(width.0));
-        asked.unwrap_or(PAGE_WIDTH).clamp(40, MOST_WIDTH)
+        asked.unwrap_or(Self::PAGE_WIDTH).clamp(40, MOST_WIDTH)
     }
 
     /// Prints text that may hold colours.

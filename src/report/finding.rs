@@ -3,13 +3,14 @@
 use serde::Serialize;
 
 use super::Selection;
+use super::fingerprint::Fingerprints;
 use crate::finding::Level;
 use crate::text::{Columns, SourceText, Span};
 use crate::workspace::{ConfigurationError, FileState, Located};
 
-/// What `scruple check --format json` prints of each finding. Lines and columns count from 1, columns in characters; an end
-/// is the place after the last character.
-#[derive(Debug, Serialize)]
+/// What `scruple check --format json` prints of each finding, in the schema `check.schema.json`. Lines and columns count from 1,
+/// columns in characters unless another format counts otherwise; an end is the place after the last character.
+#[derive(Clone, Debug, Serialize)]
 pub struct FindingReport {
     /// The finding's code; none for what is wrong with a `scruple.toml`.
     pub code: Option<&'static str>,
@@ -35,10 +36,12 @@ pub struct FindingReport {
     pub related: Vec<RelatedReport>,
     /// Changes that would answer it, the likeliest first.
     pub fixes: Vec<FixReport>,
+    /// The same for the same finding from run to run, wherever its line moves to in its file.
+    pub fingerprint: String,
 }
 
 /// A place that has to do with a finding.
-#[derive(Debug, Serialize)]
+#[derive(Clone, Debug, Serialize)]
 pub struct RelatedReport {
     /// The file.
     pub file: String,
@@ -51,7 +54,7 @@ pub struct RelatedReport {
 }
 
 /// A change that answers a finding.
-#[derive(Debug, Serialize)]
+#[derive(Clone, Debug, Serialize)]
 pub struct FixReport {
     /// What it does.
     pub title: String,
@@ -60,7 +63,7 @@ pub struct FixReport {
 }
 
 /// A replacement of text.
-#[derive(Debug, Serialize)]
+#[derive(Clone, Debug, Serialize)]
 pub struct EditReport {
     /// The line of its beginning.
     pub line: usize,
@@ -75,12 +78,21 @@ pub struct EditReport {
 }
 
 /// Every finding of the selection, in the order of files and places.
-pub fn finding_reports(selection: &Selection) -> Vec<FindingReport> {
-    selection.findings().map(|(file, located)| finding_report(selection, file, located)).collect()
+pub fn finding_reports(selection: &Selection, columns: Columns) -> Vec<FindingReport> {
+    let mut fingerprints = Fingerprints::default();
+    let all = selection.findings();
+    all.map(|(file, located)| finding_report(selection, file, located, columns, fingerprints.next(file, located))).collect()
 }
 
 /// A finding in its file.
-pub(super) fn finding_report(selection: &Selection, file: &FileState, located: &Located) -> FindingReport {
+pub(super) fn finding_report(
+    selection: &Selection,
+    file: &FileState,
+    located: &Located,
+    columns: Columns,
+    fingerprint: String,
+) -> FindingReport {
+    let range = |source: &SourceText, span| range(source, span, columns);
     let finding = &located.finding;
     let (line, column, end_line, end_column) = range(&file.source, located.span);
     let block = file.model.blocks.get(located.block).and_then(|block| block.name.as_ref());
@@ -116,6 +128,7 @@ pub(super) fn finding_report(selection: &Selection, file: &FileState, located: &
         help: finding.help.clone(),
         related: related.collect(),
         fixes: fixes.collect(),
+        fingerprint,
     }
 }
 
@@ -136,14 +149,15 @@ pub fn configuration_findings(file: &str, errors: &[ConfigurationError]) -> Vec<
             help: String::new(),
             related: Vec::new(),
             fixes: Vec::new(),
+            fingerprint: super::fingerprint::of_words(&[file, &error.message]),
         }
     };
     errors.iter().map(report).collect()
 }
 
 /// Line and column of both ends, counted from 1.
-fn range(source: &SourceText, span: Span) -> (usize, usize, usize, usize) {
-    let start = source.position(span.start, Columns::Characters);
-    let end = source.position(span.end, Columns::Characters);
+fn range(source: &SourceText, span: Span, columns: Columns) -> (usize, usize, usize, usize) {
+    let start = source.position(span.start, columns);
+    let end = source.position(span.end, columns);
     (start.line + 1, start.column + 1, end.line + 1, end.column + 1)
 }

@@ -1,5 +1,6 @@
 //! What a report speaks of: some files of a snapshot, under the names by which the reader's folder knows them.
 
+use std::collections::BTreeSet;
 use std::sync::Arc;
 
 use camino::Utf8PathBuf;
@@ -19,6 +20,8 @@ pub struct Selection {
     files: Vec<FileId>,
     /// The folder from which files are named.
     base: Utf8PathBuf,
+    /// The blocks that the report speaks of, where it does not speak of all.
+    only: Option<BTreeSet<(FileId, usize)>>,
 }
 
 /// One solution of the selection, or one member of a series.
@@ -48,7 +51,24 @@ impl Selection {
         let mut files: Vec<FileId> = files.into_iter().collect();
         files.sort_by_key(|id| (snapshot.file(*id).map(|file| file.path.clone()), *id));
         files.dedup();
-        Selection { snapshot, files, base }
+        Selection { snapshot, files, base, only: None }
+    }
+
+    /// The same files, of which only these blocks are spoken of.
+    pub fn only(mut self, blocks: BTreeSet<(FileId, usize)>) -> Self {
+        self.files.retain(|file| blocks.range((*file, 0)..=(*file, usize::MAX)).next().is_some());
+        self.only = Some(blocks);
+        self
+    }
+
+    /// The same, named from another folder, which is absolute.
+    pub fn named_from(&self, base: &camino::Utf8Path) -> Self {
+        Selection { base: base.to_owned(), ..self.clone() }
+    }
+
+    /// Whether the report speaks of a block.
+    fn has(&self, file: FileId, block: usize) -> bool {
+        self.only.as_ref().is_none_or(|only| only.contains(&(file, block)))
     }
 
     /// The files, in the order of their paths.
@@ -71,7 +91,10 @@ impl Selection {
 
     /// Every finding of the files, in the order of files and places.
     pub fn findings(&self) -> impl Iterator<Item = (&FileState, &Located)> {
-        self.files().flat_map(|file| self.snapshot.findings(file.id).iter().map(move |located| (file, located)))
+        self.files().flat_map(|file| {
+            let of_file = self.snapshot.findings(file.id).iter();
+            of_file.filter(|located| self.has(file.id, located.block)).map(move |located| (file, located))
+        })
     }
 
     /// How many findings there are of a level.
@@ -87,7 +110,8 @@ impl Selection {
     /// Every solution of the files, in the order of files and lines; one for each member of a series.
     pub fn solutions(&self) -> impl Iterator<Item = Subject<'_>> {
         self.files().flat_map(move |file| {
-            file.model.blocks.iter().enumerate().flat_map(move |(index, block)| self.members(file, index, block))
+            let blocks = file.model.blocks.iter().enumerate().filter(move |(index, _)| self.has(file.id, *index));
+            blocks.flat_map(move |(index, block)| self.members(file, index, block))
         })
     }
 

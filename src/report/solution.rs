@@ -3,6 +3,7 @@
 use serde::Serialize;
 
 use super::cautions::{Hazard, hazards};
+use super::fingerprint::Fingerprints;
 use super::finding::{FindingReport, finding_report};
 use super::number::{celsius, number};
 use super::reasons::{ReasonsReport, reasons_report};
@@ -10,6 +11,7 @@ use super::Subject;
 use crate::chemistry::{Failure, State};
 use crate::evaluate::{LineOutcome, Outcome, Role, SetPoint, Verdict, hardness_mol_per_L};
 use crate::model::{Expectation, Property};
+use crate::text::Columns;
 use crate::units::Unit;
 
 /// A solution, or a member of a series. What is not computed is null.
@@ -204,9 +206,18 @@ pub fn solution_report(subject: &Subject) -> SolutionReport {
         totals: state.map(totals).unwrap_or_default(),
         expectations: expectations(subject, outcome),
         hazards: outcome.map(|outcome| hazards(subject, outcome)).unwrap_or_default(),
-        findings: subject.findings().map(|located| finding_report(subject.selection, subject.file, located)).collect(),
+        findings: findings(subject),
         reasons: None,
     }
+}
+
+fn findings(subject: &Subject) -> Vec<FindingReport> {
+    let mut fingerprints = Fingerprints::default();
+    let report = |located| {
+        let fingerprint = fingerprints.next(subject.file, located);
+        finding_report(subject.selection, subject.file, located, Columns::Characters, fingerprint)
+    };
+    subject.findings().map(report).collect()
 }
 
 fn lines(outcome: Option<&Outcome>) -> impl Iterator<Item = &LineOutcome> {

@@ -54,7 +54,7 @@ fn identity(subject: &Subject) -> Vec<String> {
     identity
 }
 
-fn facts(subject: &Subject, outcome: &Outcome) -> Vec<(String, String)> {
+pub(super) fn facts(subject: &Subject, outcome: &Outcome) -> Vec<(String, String)> {
     let made_at = format::temperature(outcome.made_at_K);
     let mut facts = vec![(
         "makes".to_owned(),

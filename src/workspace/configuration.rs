@@ -6,12 +6,13 @@ use camino::Utf8Path;
 use serde::Deserialize;
 
 use super::disk::CONFIGURATION_FILE;
+use super::reader::Reader;
 use crate::chemistry::{ActivityModel, Settings};
 use crate::finding::{Code, Level};
 use crate::library;
 
 /// What a root's `scruple.toml` says, with defaults for what it does not say.
-#[derive(Clone, Debug, Default)]
+#[derive(Clone, Debug, Default, PartialEq)]
 pub struct Configuration {
     /// The edition of the language; the newest where it is not said.
     pub language: Option<u32>,
@@ -50,11 +51,11 @@ struct Written {
 
 impl Configuration {
     /// Reads the configuration of a root; a root without one has the defaults.
-    pub fn read(root: &Utf8Path) -> Self {
-        match std::fs::read_to_string(root.join(CONFIGURATION_FILE)) {
-            Ok(text) => Configuration::parse(&text),
-            Err(error) if error.kind() == std::io::ErrorKind::NotFound => Configuration::default(),
-            Err(error) => Configuration::default().with_error(format!("scruple.toml cannot be read: {error}."), None),
+    pub fn read(reader: &dyn Reader, root: &Utf8Path) -> Self {
+        match reader.read(&root.join(CONFIGURATION_FILE)) {
+            Ok(Some(text)) => Configuration::parse(&text),
+            Ok(None) => Configuration::default(),
+            Err(problem) => Configuration::default().with_error(format!("scruple.toml: {problem}."), None),
         }
     }
 

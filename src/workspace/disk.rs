@@ -2,34 +2,59 @@
 
 use camino::{Utf8Path, Utf8PathBuf};
 
+use super::reader::{MOST_BYTES, Reader, text_of, too_large};
+
 /// The name of the file that marks a root and configures it.
 pub const CONFIGURATION_FILE: &str = "scruple.toml";
 
 /// What marks the root of version control.
 const VERSION_CONTROL: &[&str] = &[".git", ".hg", ".svn", ".jj"];
 
-/// A recipe file is text for people; one larger than this is something else.
-const MOST_BYTES: u64 = 32 * 1024 * 1024;
-
 /// Folders deeper than this are not walked.
 const DEEPEST: usize = 32;
 
-/// The root of the library that holds `path`: the nearest folder with a `scruple.toml`, else the version-control root, else
-/// `folder`.
-pub fn find_root(path: &Utf8Path, folder: &Utf8Path) -> Utf8PathBuf {
-    let start = if path.is_dir() { Some(path) } else { path.parent() };
-    let ancestors = || start.into_iter().flat_map(Utf8Path::ancestors);
-    ancestors()
-        .find(|candidate| candidate.join(CONFIGURATION_FILE).is_file())
-        .or_else(|| ancestors().find(|candidate| VERSION_CONTROL.iter().any(|mark| candidate.join(mark).exists())))
-        .filter(|root| !is_home(root))
-        .unwrap_or(folder)
-        .to_owned()
+/// The disk.
+#[derive(Clone, Copy, Debug, Default)]
+pub struct Disk;
+
+impl Reader for Disk {
+    fn read(&self, path: &Utf8Path) -> Result<Option<String>, String> {
+        read(path)
+    }
+
+    fn is_file(&self, path: &Utf8Path) -> bool {
+        path.is_file()
+    }
+
+    fn is_folder(&self, path: &Utf8Path) -> bool {
+        path.is_dir()
+    }
+
+    fn is_top(&self, folder: &Utf8Path) -> bool {
+        VERSION_CONTROL.iter().any(|mark| folder.join(mark).exists())
+    }
+
+    fn is_forbidden(&self, folder: &Utf8Path) -> bool {
+        is_home(folder)
+    }
+
+    fn recipe_files(&self, folder: &Utf8Path) -> Vec<Utf8PathBuf> {
+        recipe_files(folder)
+    }
+
+    fn nested_roots(&self, folder: &Utf8Path) -> Vec<Utf8PathBuf> {
+        nested_roots(folder)
+    }
 }
 
-/// Whether a folder is a root by what stands in it: a `scruple.toml`, or a version control's own folder.
-pub fn is_marked(folder: &Utf8Path) -> bool {
-    folder.join(CONFIGURATION_FILE).is_file() || VERSION_CONTROL.iter().any(|mark| folder.join(mark).exists())
+/// The root of the library that holds `path`, on disk.
+pub fn find_root(path: &Utf8Path, folder: &Utf8Path) -> Utf8PathBuf {
+    Disk.find_root(path, folder)
+}
+
+/// The top of the version control that holds a folder.
+pub fn version_control_top(folder: &Utf8Path) -> Option<&Utf8Path> {
+    folder.ancestors().find(|candidate| Disk.is_top(candidate))
 }
 
 /// Whether a folder is a bare home directory or the root of the file system, which are never walked.
@@ -62,7 +87,7 @@ pub fn recipe_files(folder: &Utf8Path) -> Vec<Utf8PathBuf> {
 }
 
 /// The folders below a folder that are roots of their own, in order; hidden and ignored ones left out.
-pub fn nested_roots(folder: &Utf8Path) -> Vec<Utf8PathBuf> {
+fn nested_roots(folder: &Utf8Path) -> Vec<Utf8PathBuf> {
     if is_home(folder) {
         return Vec::new();
     }
@@ -83,7 +108,7 @@ pub fn nested_roots(folder: &Utf8Path) -> Vec<Utf8PathBuf> {
 ///
 /// # Errors
 /// A sentence that says why the file cannot be read as text.
-pub fn read(path: &Utf8Path) -> Result<Option<String>, String> {
+fn read(path: &Utf8Path) -> Result<Option<String>, String> {
     let metadata = match std::fs::metadata(path) {
         Ok(metadata) => metadata,
         Err(error) if error.kind() == std::io::ErrorKind::NotFound => return Ok(None),
@@ -93,14 +118,7 @@ pub fn read(path: &Utf8Path) -> Result<Option<String>, String> {
         return Ok(None);
     }
     if metadata.len() > MOST_BYTES {
-        return Err(format!("the file is larger than {} MiB, which no recipe is", MOST_BYTES / 1024 / 1024));
+        return Err(too_large());
     }
-    let bytes = std::fs::read(path).map_err(|error| format!("the file cannot be read: {error}"))?;
-    match String::from_utf8(bytes) {
-        Ok(text) => Ok(Some(text)),
-        Err(error) => {
-            let line = 1 + error.as_bytes().iter().take(error.utf8_error().valid_up_to()).filter(|byte| **byte == b'\n').count();
-            Err(format!("the file is not UTF-8 text: line {line} holds bytes that are no characters"))
-        }
-    }
+    text_of(std::fs::read(path).map_err(|error| format!("the file cannot be read: {error}"))?).map(Some)
 }

@@ -1,20 +1,26 @@
 //! Files, the graph of uses, configuration; an immutable snapshot of everything known.
 
 mod build;
+mod changes;
 mod configuration;
 mod disk;
 mod order;
 mod progress;
+mod reader;
 mod remember;
 mod snapshot;
+mod tree;
 
+pub use changes::reached;
 pub use configuration::{Configuration, ConfigurationError};
-pub use disk::{CONFIGURATION_FILE, find_root, is_home, is_marked, nested_roots, recipe_files};
+pub use disk::{CONFIGURATION_FILE, Disk, find_root, is_home, recipe_files, version_control_top};
 pub use progress::Progress;
 pub use remember::Remembered;
+pub use reader::{MOST_BYTES, Reader, too_large};
 pub use snapshot::{Checked, FileState, Located, Origin, RootView, Snapshot};
+pub use tree::RevisionFiles;
 
-use std::collections::BTreeMap;
+use std::collections::{BTreeMap, BTreeSet};
 use std::sync::Arc;
 
 use camino::{Utf8Path, Utf8PathBuf};
@@ -24,8 +30,10 @@ use crate::text::{FileId, SourceText};
 
 /// Everything that can change: which files there are and what stands in them. Each call of [`Workspace::snapshot`] gives
 /// what is known of the present state.
-#[derive(Debug, Default)]
+#[derive(Clone, Debug)]
 pub struct Workspace {
+    /// Where files that are not open in an editor are read from.
+    reader: Arc<dyn Reader>,
     /// Absolute paths by number; never shrinks, so that a number stays its file's.
     paths: Vec<Utf8PathBuf>,
     /// The numbers by path.
@@ -38,6 +46,21 @@ pub struct Workspace {
     root_of: BTreeMap<FileId, Utf8PathBuf>,
     /// What was known before the last change.
     last: Option<Arc<Snapshot>>,
+    /// What was read from the reader before this one: what is the same there is shared.
+    earlier: Earlier,
+}
+
+/// What another reader held.
+#[derive(Clone, Debug, Default)]
+struct Earlier {
+    texts: BTreeMap<FileId, Arc<SourceText>>,
+    roots: BTreeMap<Utf8PathBuf, Arc<Configuration>>,
+}
+
+impl Default for Workspace {
+    fn default() -> Self {
+        Workspace::reading(Arc::new(Disk))
+    }
 }
 
 /// What stands in a file: in the editor where it is open there, else on disk.
@@ -49,9 +72,53 @@ struct Entry {
 }
 
 impl Workspace {
-    /// A workspace without files.
+    /// A workspace without files, which reads from the disk.
     pub fn new() -> Self {
         Workspace::default()
+    }
+
+    /// A workspace without files, which reads from somewhere else than the disk.
+    pub fn reading(reader: Arc<dyn Reader>) -> Self {
+        Workspace {
+            reader,
+            paths: Vec::new(),
+            ids: BTreeMap::new(),
+            texts: BTreeMap::new(),
+            roots: BTreeMap::new(),
+            root_of: BTreeMap::new(),
+            last: None,
+            earlier: Earlier::default(),
+        }
+    }
+
+    /// Forgets every file and root, and reads from somewhere else from now on: another revision of the same library. What was
+    /// known is remembered, so that the next snapshot shares with the last one whatever is the same in both.
+    pub fn read_from(&mut self, reader: Arc<dyn Reader>) {
+        let texts = std::mem::take(&mut self.texts).into_iter();
+        self.earlier.texts = texts.filter_map(|(id, entry)| Some((id, entry.disk?))).collect();
+        self.earlier.roots = std::mem::take(&mut self.roots);
+        self.root_of.clear();
+        self.reader = reader;
+    }
+
+    /// Opens what a path names: a folder with the roots in it, or a file with the root that it belongs to. Nothing where the
+    /// path does not exist.
+    pub fn open(&mut self, path: &Utf8Path) {
+        if self.reader.is_folder(path) {
+            self.open_root(path, path);
+            for nested in self.reader.nested_roots(path) {
+                self.open_root(&nested, &nested);
+            }
+        } else if self.reader.is_file(path) {
+            let folder = path.parent().unwrap_or(path);
+            let root = self.reader.find_root(path, folder);
+            if root == folder && !self.reader.is_marked(&root) {
+                // Nothing marks a library here, so nothing but the file and what it uses is read.
+                self.open_file(path, folder);
+            } else {
+                self.open_root(path, folder);
+            }
+        }
     }
 
     /// The number of a file, made up if it is new. `path` is absolute.
@@ -68,9 +135,9 @@ impl Workspace {
     /// Opens the root that holds `path` (a folder or a file) and reads every recipe file in it.
     /// `folder` bounds the search for a root: the workspace folder, or the folder that was named.
     pub fn open_root(&mut self, path: &Utf8Path, folder: &Utf8Path) -> Utf8PathBuf {
-        let root = find_root(path, folder);
+        let root = self.reader.find_root(path, folder);
         self.reload_configuration(&root);
-        for file in recipe_files(&root) {
+        for file in self.reader.recipe_files(&root) {
             self.read(&file, &root);
         }
         root
@@ -79,7 +146,7 @@ impl Workspace {
     /// Opens a single file without walking its root: for files outside any folder that may be walked. What it uses is
     /// read too.
     pub fn open_file(&mut self, path: &Utf8Path, folder: &Utf8Path) -> FileId {
-        let root = find_root(path, folder);
+        let root = self.reader.find_root(path, folder);
         if !self.roots.contains_key(&root) {
             self.reload_configuration(&root);
         }
@@ -88,7 +155,15 @@ impl Workspace {
 
     /// Reads the configuration of a root again.
     pub fn reload_configuration(&mut self, root: &Utf8Path) {
-        self.roots.insert(root.to_owned(), Arc::new(Configuration::read(root)));
+        let read = Configuration::read(self.reader.as_ref(), root);
+        self.set_configuration(root, read);
+    }
+
+    /// Takes over a configuration for a root, whatever its `scruple.toml` says.
+    pub fn set_configuration(&mut self, root: &Utf8Path, configuration: Configuration) {
+        let known = self.roots.get(root).or_else(|| self.earlier.roots.get(root)).filter(|known| ***known == configuration);
+        let shared = known.cloned().unwrap_or_else(|| Arc::new(configuration));
+        self.roots.insert(root.to_owned(), shared);
     }
 
     /// Reads a file from disk again; a file that has vanished is forgotten unless it is open in an editor.
@@ -103,17 +178,18 @@ impl Workspace {
             // The deepest root that holds the file.
             self.roots.keys().filter(|root| path.starts_with(root)).max_by_key(|root| root.as_str().len()).cloned()
         })
-        .unwrap_or_else(|| find_root(path, path.parent().unwrap_or(path)))
+        .unwrap_or_else(|| self.reader.find_root(path, path.parent().unwrap_or(path)))
     }
 
     fn read(&mut self, path: &Utf8Path, root: &Utf8Path) -> FileId {
         let id = self.file_id(path);
         self.root_of.insert(id, root.to_owned());
         let entry = self.texts.entry(id).or_default();
-        match disk::read(path) {
+        match self.reader.read(path) {
             Ok(Some(text)) => {
                 if entry.disk.as_ref().is_none_or(|old| old.as_str() != text) {
-                    entry.disk = Some(Arc::new(SourceText::from(text.as_str())));
+                    let earlier = self.earlier.texts.get(&id).filter(|earlier| earlier.as_str() == text);
+                    entry.disk = Some(earlier.cloned().unwrap_or_else(|| Arc::new(SourceText::from(text.as_str()))));
                 }
                 entry.disk_problem = None;
             }
@@ -154,6 +230,24 @@ impl Workspace {
         self.reread(path);
     }
 
+    /// Reads nothing any more and keeps only these files: for trying out edits of known texts.
+    pub fn read_only(&mut self, files: &BTreeSet<FileId>) {
+        self.reader = Arc::new(RevisionFiles::default());
+        self.texts.retain(|id, _| files.contains(id));
+    }
+
+    /// Forgets an editor's text; what was read before counts again.
+    pub fn drop_open_text(&mut self, path: &Utf8Path) {
+        if let Some(id) = self.ids.get(path)
+            && let Some(entry) = self.texts.get_mut(id)
+        {
+            entry.open = None;
+            if entry.disk.is_none() && entry.disk_problem.is_none() {
+                self.texts.remove(id);
+            }
+        }
+    }
+
     /// The text that an editor holds of a file.
     pub fn open_text(&self, path: &Utf8Path) -> Option<Arc<SourceText>> {
         self.ids.get(path).and_then(|id| self.texts.get(id)).and_then(|entry| entry.open.clone())
@@ -182,7 +276,7 @@ impl Workspace {
                 .files
                 .values()
                 .flat_map(|file| build::used_paths(file).map(|path| (path, file.root.clone())))
-                .filter(|(path, _)| self.ids.get(path).is_none_or(|id| !self.texts.contains_key(id)) && path.is_file())
+                .filter(|(path, _)| self.ids.get(path).is_none_or(|id| !self.texts.contains_key(id)) && self.reader.is_file(path))
                 .collect();
             if used.is_empty() {
                 return snapshot;

@@ -150,6 +150,12 @@ impl Snapshot {
         self.library_files.values()
     }
 
+    /// The files that the `use` lines of a file lead to and that are there.
+    pub fn files_used_by(&self, file: FileId) -> Vec<FileId> {
+        let paths = self.files.get(&file).into_iter().flat_map(|file| super::build::used_paths(file));
+        paths.filter_map(|path| self.file_by_path(&path)).map(|file| file.id).collect()
+    }
+
     /// The root that a file belongs to.
     pub fn root(&self, file: FileId) -> Option<&Arc<RootView>> {
         self.roots.get(&self.files.get(&file)?.root)

@@ -53,7 +53,7 @@ fn row(cells: &[String], out: &mut String) {
 }
 
 /// The text with everything masked that Markdown would read as its own.
-fn escaped(text: &str) -> String {
+pub(in crate::report) fn escaped(text: &str) -> String {
     let mut masked = String::with_capacity(text.len());
     for character in text.chars() {
         if matches!(character, '\\' | '|' | '*' | '_' | '`' | '<' | '>' | '[' | ']' | '#' | '~') {

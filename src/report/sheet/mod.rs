@@ -3,6 +3,7 @@
 mod markdown;
 mod text;
 
+pub(super) use markdown::escaped as escaped_markdown;
 pub use markdown::markdown;
 pub use text::text;
 
