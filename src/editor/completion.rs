@@ -70,6 +70,24 @@ pub enum CompletionKind {
     Value,
 }
 
+impl CompletionKind {
+    /// Every kind.
+    pub const ALL: &'static [CompletionKind] = &[
+        CompletionKind::Keyword,
+        CompletionKind::Solution,
+        CompletionKind::Bottle,
+        CompletionKind::Substance,
+        CompletionKind::Constituent,
+        CompletionKind::Solid,
+        CompletionKind::Lab,
+        CompletionKind::Unit,
+        CompletionKind::Property,
+        CompletionKind::Code,
+        CompletionKind::File,
+        CompletionKind::Value,
+    ];
+}
+
 /// What can be written at an offset.
 pub fn completion(snapshot: &Snapshot, file: FileId, offset: usize) -> Completions {
     let Some(state) = snapshot.file(file) else { return Completions::default() };

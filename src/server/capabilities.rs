@@ -12,6 +12,9 @@ use crate::text::Columns;
 /// The kind of the action that applies all fixes that need no thought; users name it in their editor's settings for saving.
 pub const FIX_ALL: CodeActionKind = CodeActionKind::new("source.fixAll.scruple");
 
+/// The command that tells in words what a lens is about, for clients that cannot list places: address, position.
+pub const TELL_COMMAND: &str = "scruple.tell";
+
 /// Characters after which something is worth proposing: after a word or a comma comes the next part of a line, and a path
 /// is completed folder by folder.
 const TRIGGERS: &[char] = &[' ', ',', '/', '"'];
@@ -48,6 +51,25 @@ pub struct Session {
     pub refresh_hints: bool,
     /// The client watches files for us when asked to.
     pub watches_files: bool,
+    /// The client asks for findings, and can be told to ask again. One that cannot be told would not see what a change of
+    /// one file does to another; findings are pushed to it.
+    pub pulls_findings: bool,
+    /// The client can be told to ask for lenses again.
+    pub refresh_lenses: bool,
+    /// The client can be told to ask for colours again.
+    pub refresh_tokens: bool,
+    /// The client shows how far a long piece of work has come.
+    pub shows_progress: bool,
+    /// The client asks for the text about a completion once it is chosen.
+    pub resolves_documentation: bool,
+    /// Text about a completion may be Markdown.
+    pub markdown_completion: bool,
+    /// The client tells of changed settings only when asked to.
+    pub registers_settings: bool,
+    /// The client lists the uses of a recipe when a lens is chosen.
+    pub shows_uses: bool,
+    /// The client asks what else changes when files are renamed.
+    pub asks_before_renaming: bool,
     /// The client can be asked for the user's settings.
     pub gives_settings: bool,
     /// The pages of the built-in library and of the findings, as this client opens them.
@@ -63,6 +85,9 @@ impl Session {
         let hover = text.hover.and_then(|hover| hover.content_format).unwrap_or_default();
         let findings = text.publish_diagnostics.unwrap_or_default();
         let actions = text.code_action.unwrap_or_default();
+        let item = text.completion.and_then(|completion| completion.completion_item).unwrap_or_default();
+        let window = client.window.clone().unwrap_or_default();
+        let refresh_findings = workspace.diagnostic.and_then(|findings| findings.refresh_support).unwrap_or_default();
         Session {
             columns: columns(client),
             folders: folders(params),
@@ -84,8 +109,22 @@ impl Session {
                 .did_change_watched_files
                 .and_then(|watch| watch.dynamic_registration)
                 .unwrap_or_default(),
+            pulls_findings: text.diagnostic.is_some() && refresh_findings,
+            refresh_lenses: workspace.code_lens.and_then(|lens| lens.refresh_support).unwrap_or_default(),
+            refresh_tokens: workspace.semantic_tokens.and_then(|tokens| tokens.refresh_support).unwrap_or_default(),
+            shows_progress: window.work_done_progress.unwrap_or_default(),
+            resolves_documentation: item
+                .resolve_support
+                .is_some_and(|resolve| resolve.properties.iter().any(|property| property == "documentation")),
+            markdown_completion: item.documentation_format.is_some_and(|formats| formats.contains(&MarkupKind::Markdown)),
+            registers_settings: workspace
+                .did_change_configuration
+                .and_then(|change| change.dynamic_registration)
+                .unwrap_or_default(),
+            shows_uses: announces(client, "scrupleShowUses"),
+            asks_before_renaming: workspace.file_operations.and_then(|files| files.will_rename).unwrap_or_default(),
             gives_settings: workspace.configuration.unwrap_or_default(),
-            pages: Pages::new(announces_library(client)),
+            pages: Pages::new(announces(client, "scrupleLibrary")),
         }
     }
 
@@ -105,6 +144,7 @@ impl Session {
             hover_provider: Some(HoverProviderCapability::Simple(true)),
             completion_provider: Some(CompletionOptions {
                 trigger_characters: Some(TRIGGERS.iter().map(ToString::to_string).collect()),
+                resolve_provider: Some(true),
                 ..CompletionOptions::default()
             }),
             definition_provider: Some(OneOf::Left(true)),
@@ -121,12 +161,18 @@ impl Session {
             semantic_tokens_provider: Some(SemanticTokensServerCapabilities::SemanticTokensOptions(SemanticTokensOptions {
                 legend: token_legend(),
                 range: Some(true),
-                full: Some(SemanticTokensFullOptions::Bool(true)),
+                full: Some(SemanticTokensFullOptions::Delta { delta: Some(true) }),
                 work_done_progress_options: WorkDoneProgressOptions::default(),
             })),
             inlay_hint_provider: Some(OneOf::Left(true)),
             code_action_provider: Some(CodeActionProviderCapability::Options(CodeActionOptions {
-                code_action_kinds: Some(vec![CodeActionKind::QUICKFIX, CodeActionKind::REFACTOR_REWRITE, FIX_ALL]),
+                code_action_kinds: Some(vec![
+                    CodeActionKind::QUICKFIX,
+                    CodeActionKind::REFACTOR_REWRITE,
+                    CodeActionKind::REFACTOR_EXTRACT,
+                    CodeActionKind::REFACTOR_INLINE,
+                    FIX_ALL,
+                ]),
                 ..CodeActionOptions::default()
             })),
             rename_provider: Some(OneOf::Right(RenameOptions {
@@ -135,15 +181,46 @@ impl Session {
             })),
             document_formatting_provider: Some(OneOf::Left(true)),
             document_range_formatting_provider: Some(OneOf::Left(true)),
+            // No characters ask for it: it would open at every word of a line.
+            signature_help_provider: Some(SignatureHelpOptions::default()),
+            call_hierarchy_provider: Some(CallHierarchyServerCapability::Simple(true)),
+            code_lens_provider: Some(CodeLensOptions { resolve_provider: Some(false) }),
+            execute_command_provider: Some(ExecuteCommandOptions {
+                commands: vec![TELL_COMMAND.to_owned()],
+                work_done_progress_options: WorkDoneProgressOptions::default(),
+            }),
+            diagnostic_provider: self.pulls_findings.then(|| {
+                DiagnosticServerCapabilities::Options(DiagnosticOptions {
+                    identifier: Some("scruple".to_owned()),
+                    inter_file_dependencies: true,
+                    workspace_diagnostics: true,
+                    work_done_progress_options: WorkDoneProgressOptions::default(),
+                })
+            }),
             workspace: Some(WorkspaceServerCapabilities {
                 workspace_folders: Some(WorkspaceFoldersServerCapabilities {
                     supported: Some(true),
                     change_notifications: Some(OneOf::Left(true)),
                 }),
-                file_operations: None,
+                file_operations: self.asks_before_renaming.then(file_operations),
             }),
             ..ServerCapabilities::default()
         }
+    }
+}
+
+/// The files and folders whose renaming concerns us.
+fn file_operations() -> WorkspaceFileOperationsServerCapabilities {
+    let filter = |glob: &str, matches| FileOperationFilter {
+        scheme: Some("file".to_owned()),
+        pattern: FileOperationPattern { glob: glob.to_owned(), matches: Some(matches), options: None },
+    };
+    let filters = vec![filter("**/*.prep", FileOperationPatternKind::File), filter("**", FileOperationPatternKind::Folder)];
+    let options = Some(FileOperationRegistrationOptions { filters });
+    WorkspaceFileOperationsServerCapabilities {
+        will_rename: options.clone(),
+        did_rename: options,
+        ..WorkspaceFileOperationsServerCapabilities::default()
     }
 }
 
@@ -169,14 +246,21 @@ fn folders(params: &InitializeParams) -> Vec<Utf8PathBuf> {
     folders
 }
 
-fn announces_library(client: &ClientCapabilities) -> bool {
+/// Whether a client announces something that is ours.
+fn announces(client: &ClientCapabilities, name: &str) -> bool {
     let experimental = client.experimental.as_ref();
-    experimental.and_then(|all| all.get("scrupleLibrary")).and_then(Value::as_bool).unwrap_or_default()
+    experimental.and_then(|all| all.get(name)).and_then(Value::as_bool).unwrap_or_default()
 }
 
 /// The parameters of `initialize` without what cannot be read. Editors newer than this server announce things that it has
 /// no words for; that must not keep them from being served.
-pub fn readable_initialize(params: Value) -> Value {
+pub fn readable_initialize(mut params: Value) -> Value {
+    // The types at hand know this group by an older name.
+    if let Some(workspace) = params.pointer_mut("/capabilities/workspace").and_then(Value::as_object_mut)
+        && let Some(group) = workspace.remove("diagnostics")
+    {
+        workspace.insert("diagnostic".to_owned(), group);
+    }
     let reads = |params: &Value| serde_json::from_value::<InitializeParams>(params.clone()).is_ok();
     if reads(&params) {
         return params;
@@ -239,6 +323,15 @@ mod tests {
             assert_eq!(session.columns, columns);
             let answered = serde_json::to_value(session.offer()).unwrap()["positionEncoding"].clone();
             assert_eq!(answered, if columns == Columns::Utf8 { "utf-8" } else { "utf-16" });
+        }
+    }
+
+    #[test]
+    fn findings_are_pulled_only_by_clients_that_can_be_told_to_ask_again() {
+        for (refresh, pulled) in [(json!({ "refreshSupport": true }), true), (json!({}), false)] {
+            let capabilities = json!({ "textDocument": { "diagnostic": {} }, "workspace": { "diagnostics": refresh } });
+            let session = session(json!({ "capabilities": capabilities }));
+            assert_eq!((session.pulls_findings, session.offer().diagnostic_provider.is_some()), (pulled, pulled));
         }
     }
 

@@ -8,12 +8,13 @@ use tower_lsp::jsonrpc::{Error, ErrorCode, Result};
 use tower_lsp::lsp_types::*;
 use tower_lsp::{Client, LanguageServer, async_trait};
 
-use super::capabilities::Session;
+use super::capabilities::{Session, TELL_COMMAND};
 use super::library::{LibraryText, LibraryTextParams};
 use super::settings::{SECTION, Settings};
+use super::token_memory::TokenMemory;
 use super::view::View;
 use super::world::{Kind, World};
-use super::{library, log, to_proto};
+use super::{from_proto, library, log, to_proto};
 use crate::editor;
 use crate::text::Span;
 use crate::workspace::FileState;
@@ -26,12 +27,13 @@ const REQUEST_FAILED: i64 = -32803;
 pub struct Server {
     client: Client,
     world: OnceLock<World>,
+    tokens: TokenMemory,
 }
 
 impl Server {
     /// A server that waits for `initialize`.
     pub fn new(client: Client) -> Server {
-        Server { client, world: OnceLock::new() }
+        Server { client, world: OnceLock::new(), tokens: TokenMemory::default() }
     }
 
     /// `scruple/libraryText`: the text of a page of the built-in library or of a finding.
@@ -43,6 +45,14 @@ impl Server {
         let text = library::text(name).filter(|_| params.uri.scheme() == library::SCHEME);
         let text = text.ok_or_else(|| Error::invalid_params(format!("There is no page {}.", params.uri)))?;
         Ok(LibraryText { text: text.to_owned() })
+    }
+
+    /// `scruple/sheet`: the sheet of the solution at a position, nothing outside solutions.
+    ///
+    /// # Errors
+    /// As those of any question: the text was changed meanwhile, or a fault of our own.
+    pub async fn sheet(&self, params: TextDocumentPositionParams) -> Result<Option<to_proto::RecipeSheet>> {
+        self.ask_at(params, Kind::Typing, to_proto::recipe_sheet).await
     }
 
     fn world(&self) -> Result<&World> {
@@ -83,16 +93,28 @@ impl Server {
         });
     }
 
-    /// Asks the client to tell us when a recipe or a configuration changes on disk.
-    fn watch_files(&self) {
+    /// Asks the client to tell us of changes: of a recipe or a configuration on disk, of the user's settings.
+    fn register(&self, session: &Session) {
         let watcher = |pattern: &str| json!({ "globPattern": pattern });
-        let options = json!({ "watchers": [watcher("**/*.prep"), watcher("**/scruple.toml")] });
-        let method = "workspace/didChangeWatchedFiles".to_owned();
-        let registration = Registration { id: "files".to_owned(), method, register_options: Some(options) };
+        let registration = |id: &str, method: &str, options: Value| Registration {
+            id: id.to_owned(),
+            method: method.to_owned(),
+            register_options: Some(options),
+        };
+        let files = || {
+            let options = json!({ "watchers": [watcher("**/*.prep"), watcher("**/scruple.toml")] });
+            registration("files", "workspace/didChangeWatchedFiles", options)
+        };
+        let settings = || registration("settings", "workspace/didChangeConfiguration", json!({ "section": SECTION }));
+        let wanted = session.watches_files.then(files).into_iter().chain(session.registers_settings.then(settings));
+        let wanted: Vec<Registration> = wanted.collect();
         let client = self.client.clone();
+        if wanted.is_empty() {
+            return;
+        }
         tokio::spawn(async move {
-            if let Err(error) = client.register_capability(vec![registration]).await {
-                log::write(format_args!("files are not watched: {error}"));
+            if let Err(error) = client.register_capability(wanted).await {
+                log::write(format_args!("changes are not told: {error}"));
             }
         });
     }
@@ -114,9 +136,7 @@ impl LanguageServer for Server {
 
     async fn initialized(&self, _: InitializedParams) {
         let Ok(world) = self.world() else { return };
-        if world.session().watches_files {
-            self.watch_files();
-        }
+        self.register(world.session());
         if world.session().gives_settings {
             self.fetch_settings();
         }
@@ -147,6 +167,7 @@ impl LanguageServer for Server {
 
     async fn did_close(&self, params: DidCloseTextDocumentParams) {
         if let Ok(world) = self.world() {
+            self.tokens.forget(&params.text_document.uri);
             world.close(&params.text_document.uri);
         }
     }
@@ -159,7 +180,8 @@ impl LanguageServer for Server {
 
     async fn did_change_workspace_folders(&self, params: DidChangeWorkspaceFoldersParams) {
         if let Ok(world) = self.world() {
-            world.folders(params.event.added.into_iter().map(|folder| folder.uri));
+            let uris = |folders: Vec<WorkspaceFolder>| folders.into_iter().map(|folder| folder.uri);
+            world.folders(uris(params.event.added), uris(params.event.removed));
         }
     }
 
@@ -178,6 +200,79 @@ impl LanguageServer for Server {
 
     async fn completion(&self, params: CompletionParams) -> Result<Option<CompletionResponse>> {
         self.ask_at(params.text_document_position, Kind::Typing, to_proto::completions).await
+    }
+
+    async fn completion_resolve(&self, item: CompletionItem) -> Result<CompletionItem> {
+        let Some(uri) = item.data.as_ref().and_then(Value::as_str).and_then(|uri| Url::parse(uri).ok()) else { return Ok(item) };
+        let unresolved = item.clone();
+        let resolved = move |view: &View, file: &FileState| Some(to_proto::resolved(view, file, item));
+        Ok(self.ask(&TextDocumentIdentifier::new(uri), Kind::Typing, resolved).await?.unwrap_or(unresolved))
+    }
+
+    async fn signature_help(&self, params: SignatureHelpParams) -> Result<Option<SignatureHelp>> {
+        self.ask_at(params.text_document_position_params, Kind::Places, to_proto::signature_help).await
+    }
+
+    async fn prepare_call_hierarchy(&self, params: CallHierarchyPrepareParams) -> Result<Option<Vec<CallHierarchyItem>>> {
+        self.ask_at(params.text_document_position_params, Kind::Places, to_proto::prepare_call_hierarchy).await
+    }
+
+    async fn incoming_calls(&self, params: CallHierarchyIncomingCallsParams) -> Result<Option<Vec<CallHierarchyIncomingCall>>> {
+        self.ask_at(place_of(params.item), Kind::Places, to_proto::incoming_calls).await
+    }
+
+    async fn outgoing_calls(&self, params: CallHierarchyOutgoingCallsParams) -> Result<Option<Vec<CallHierarchyOutgoingCall>>> {
+        self.ask_at(place_of(params.item), Kind::Places, to_proto::outgoing_calls).await
+    }
+
+    async fn code_lens(&self, params: CodeLensParams) -> Result<Option<Vec<CodeLens>>> {
+        self.ask(&params.text_document, Kind::Places, to_proto::code_lenses).await
+    }
+
+    async fn execute_command(&self, params: ExecuteCommandParams) -> Result<Option<Value>> {
+        let mut arguments = params.arguments.into_iter();
+        let uri = arguments.next().and_then(|uri| serde_json::from_value::<Url>(uri).ok());
+        let position = arguments.next().and_then(|position| serde_json::from_value::<Position>(position).ok());
+        let Some((uri, position)) = uri.zip(position).filter(|_| params.command == TELL_COMMAND) else {
+            return Err(Error::invalid_params(format!("There is no command {} with these arguments.", params.command)));
+        };
+        let at = TextDocumentPositionParams::new(TextDocumentIdentifier::new(uri), position);
+        if let Some(text) = self.ask_at(at, Kind::Places, to_proto::told).await? {
+            self.client.show_message(MessageType::INFO, text).await;
+        }
+        Ok(None)
+    }
+
+    async fn diagnostic(&self, params: DocumentDiagnosticParams) -> Result<DocumentDiagnosticReportResult> {
+        let known = params.previous_result_id;
+        let report = move |view: &View, path: &Utf8Path| {
+            to_proto::document_report(view, view.file(path).map(|file| file.as_ref()), known.as_deref())
+        };
+        let report = self.world()?.ask(&params.text_document.uri, Kind::Places, report).await?;
+        Ok(DocumentDiagnosticReportResult::Report(report))
+    }
+
+    async fn workspace_diagnostic(&self, params: WorkspaceDiagnosticParams) -> Result<WorkspaceDiagnosticReportResult> {
+        let known = params.previous_result_ids;
+        let report = self.world()?.ask_all(move |view| to_proto::workspace_report(view, known)).await?;
+        Ok(WorkspaceDiagnosticReportResult::Report(report))
+    }
+
+    async fn will_rename_files(&self, params: RenameFilesParams) -> Result<Option<WorkspaceEdit>> {
+        let path = |uri: &str| from_proto::file_path(&Url::parse(uri).ok()?);
+        let renames: Vec<_> = params.files.iter().filter_map(|file| Some((path(&file.old_uri)?, path(&file.new_uri)?))).collect();
+        let edits = move |view: &View| {
+            let edits = editor::file_renames(&view.snapshot, &renames);
+            if edits.is_empty() { None } else { to_proto::workspace_edit(view, edits) }
+        };
+        self.world()?.ask_all(edits).await
+    }
+
+    async fn did_rename_files(&self, params: RenameFilesParams) {
+        if let Ok(world) = self.world() {
+            let uris = params.files.iter().flat_map(|file| [&file.old_uri, &file.new_uri]);
+            world.disk(uris.filter_map(|uri| Url::parse(uri).ok()));
+        }
     }
 
     async fn goto_definition(&self, params: GotoDefinitionParams) -> Result<Option<GotoDefinitionResponse>> {
@@ -241,7 +336,16 @@ impl LanguageServer for Server {
     async fn semantic_tokens_full(&self, params: SemanticTokensParams) -> Result<Option<SemanticTokensResult>> {
         let all = |view: &View, file: &FileState| to_proto::semantic_tokens(view, file, whole(file));
         let data = self.ask(&params.text_document, Kind::Places, all).await?;
-        Ok(Some(SemanticTokensResult::Tokens(SemanticTokens { result_id: None, data })))
+        Ok(Some(SemanticTokensResult::Tokens(self.tokens.whole(&params.text_document.uri, data))))
+    }
+
+    async fn semantic_tokens_full_delta(
+        &self,
+        params: SemanticTokensDeltaParams,
+    ) -> Result<Option<SemanticTokensFullDeltaResult>> {
+        let all = |view: &View, file: &FileState| to_proto::semantic_tokens(view, file, whole(file));
+        let data = self.ask(&params.text_document, Kind::Places, all).await?;
+        Ok(Some(self.tokens.difference(&params.text_document.uri, &params.previous_result_id, data)))
     }
 
     async fn semantic_tokens_range(&self, params: SemanticTokensRangeParams) -> Result<Option<SemanticTokensRangeResult>> {
@@ -281,6 +385,11 @@ impl LanguageServer for Server {
         };
         self.ask(&params.text_document, Kind::Places, formatted).await
     }
+}
+
+/// Where a thing of the hierarchy is named.
+fn place_of(item: CallHierarchyItem) -> TextDocumentPositionParams {
+    TextDocumentPositionParams::new(TextDocumentIdentifier::new(item.uri), item.selection_range.start)
 }
 
 fn whole(file: &FileState) -> Span {

@@ -9,6 +9,7 @@ mod documents;
 mod framing;
 mod from_proto;
 mod guard;
+mod indexing;
 mod language_server;
 mod library;
 mod log;
@@ -17,7 +18,9 @@ mod publish;
 mod serve;
 mod settings;
 mod to_proto;
+mod token_memory;
 mod view;
+mod watch;
 mod watchdog;
 mod world;
 
@@ -42,7 +45,8 @@ pub fn run(log: Option<&Path>) -> io::Result<i32> {
         log::write(format_args!("the threads that compute stay as they are: {error}"));
     }
     let service = LspService::build(language_server::Server::new);
-    let (service, socket) = service.custom_method("scruple/libraryText", language_server::Server::library_text).finish();
+    let service = service.custom_method("scruple/libraryText", language_server::Server::library_text);
+    let (service, socket) = service.custom_method("scruple/sheet", language_server::Server::sheet).finish();
     let runtime = tokio::runtime::Builder::new_multi_thread().worker_threads(2).enable_time().build()?;
     let ending = runtime.block_on(serve::serve(service, socket, io::stdin(), io::stdout()));
     runtime.shutdown_background();

@@ -4,10 +4,10 @@
 //! questions with that snapshot to a pool, and publishes findings. Nobody else publishes, and what has been overtaken by a
 //! newer change is not published, so findings never go back in time.
 
-use std::collections::BTreeSet;
+use std::collections::{BTreeMap, BTreeSet};
 use std::sync::Arc;
 use std::sync::atomic::{AtomicBool, Ordering};
-use std::sync::mpsc::Receiver;
+use std::sync::mpsc::{Receiver, RecvTimeoutError};
 use std::thread;
 
 use camino::{Utf8Path, Utf8PathBuf};
@@ -18,13 +18,15 @@ use tower_lsp::Client;
 use super::capabilities::Session;
 use super::documents::{Document, Documents, Revisions};
 use super::guard::{Fault, guarded};
+use super::indexing::Indexing;
 use super::publish::Published;
 use super::settings::Settings;
 use super::view::View;
+use super::watch::{self, Watch};
 use super::world::{Event, Kind, Question, Refusal, STACK};
 use super::{library, log, to_proto};
 use crate::text::SourceText;
-use crate::workspace::{CONFIGURATION_FILE, Snapshot, Workspace, find_root, is_home};
+use crate::workspace::{CONFIGURATION_FILE, Progress, Snapshot, Workspace, find_root, is_home};
 
 /// The owner of all that is known.
 pub struct Owner {
@@ -42,6 +44,10 @@ pub struct Owner {
     settings: Arc<Settings>,
     client: Client,
     published: Published,
+    /// What a client that asks for findings would be told of each open text: its version and the name of the list.
+    to_pull: BTreeMap<Utf8PathBuf, (i32, String)>,
+    /// The files as they were last seen on disk, for clients that do not watch them.
+    watch: Watch,
     /// Whether the client has been asked to ask for inlay hints again and has not answered yet.
     refreshing: Arc<AtomicBool>,
     /// Where what waits for the client runs.
@@ -69,6 +75,8 @@ impl Owner {
             snapshot: Ok(Arc::default()),
             settings: Arc::new(settings),
             published: Published::new(client.clone()),
+            to_pull: BTreeMap::new(),
+            watch: Watch::default(),
             client,
             refreshing: Arc::default(),
             runtime: Handle::current(),
@@ -78,11 +86,16 @@ impl Owner {
 
     /// Takes events until the handlers are gone.
     pub fn run(mut self) {
-        while let Ok(first) = self.arriving.recv() {
+        while let Some(first) = self.next() {
+            let progress = Arc::new(Progress::default());
+            let reads_files = matches!(first, Event::Open { .. } | Event::Save | Event::Folders { .. } | Event::Disk(_));
+            let shown = (reads_files && self.session.shows_progress)
+                .then(|| Indexing::begin(self.client.clone(), &self.runtime, Arc::clone(&progress)));
             let (changed, questions) = self.take_all(first);
             if changed {
-                self.renew();
+                self.renew(&progress);
             }
+            drop(shown);
             if let Err(fault) = guarded(|| self.answer(questions)) {
                 log::write(format_args!("questions were dropped: {fault}"));
             }
@@ -92,28 +105,66 @@ impl Owner {
         }
     }
 
-    /// Makes the snapshot of the present state.
-    fn renew(&mut self) {
-        let before = std::mem::replace(&mut self.snapshot, guarded(|| self.workspace.snapshot()));
-        match (&before, &self.snapshot) {
-            (Ok(before), Ok(now)) if self.session.refresh_hints => {
-                let moved = self.documents.iter().any(|(path, _)| is_moved_from_outside(before, now, path));
-                if moved {
-                    self.refresh_hints();
+    /// The next event; nothing once the handlers are gone. Where the client does not watch files, they are looked at while
+    /// nothing arrives.
+    fn next(&mut self) -> Option<Event> {
+        if self.session.watches_files {
+            return self.arriving.recv().ok();
+        }
+        loop {
+            match self.arriving.recv_timeout(watch::INTERVAL) {
+                Ok(event) => return Some(event),
+                Err(RecvTimeoutError::Disconnected) => return None,
+                Err(RecvTimeoutError::Timeout) => {
+                    let changed = guarded(|| self.changed_on_disk()).unwrap_or_default();
+                    if !changed.is_empty() {
+                        return Some(Event::Disk(changed));
+                    }
                 }
             }
-            (_, Err(fault)) => log::write(format_args!("no snapshot: {fault}")),
-            _ => (),
         }
     }
 
-    /// Asks the client to ask for inlay hints again; once, until it has answered.
-    fn refresh_hints(&self) {
-        if self.session.refresh_hints && !self.refreshing.swap(true, Ordering::SeqCst) {
-            let (client, refreshing) = (self.client.clone(), Arc::clone(&self.refreshing));
+    /// The known files, their folders and the configurations that are other than when they were looked at last.
+    fn changed_on_disk(&mut self) -> Vec<Utf8PathBuf> {
+        let Ok(snapshot) = &self.snapshot else { return Vec::new() };
+        let files = snapshot.files.values().map(|file| file.path.clone());
+        let folders: BTreeSet<Utf8PathBuf> =
+            snapshot.files.values().filter_map(|file| file.path.parent()).map(Utf8Path::to_owned).chain(self.roots.iter().cloned()).collect();
+        let configurations = snapshot.roots.keys().map(|root| root.join(CONFIGURATION_FILE));
+        self.watch.changed(files.chain(folders).chain(configurations))
+    }
+
+    /// Makes the snapshot of the present state.
+    fn renew(&mut self, progress: &Progress) {
+        let before = std::mem::replace(&mut self.snapshot, guarded(|| self.workspace.snapshot_watched(progress)));
+        match (&before, &self.snapshot) {
+            (Ok(before), Ok(now)) => {
+                let moved = self.documents.iter().any(|(path, _)| is_moved_from_outside(before, now, path));
+                if moved {
+                    self.refresh();
+                }
+            }
+            (_, Err(fault)) => log::write(format_args!("no snapshot: {fault}")),
+            (Err(_), Ok(_)) => (),
+        }
+    }
+
+    /// Asks the client to ask again for what is shown beside the text; once, until it has answered.
+    fn refresh(&self) {
+        if !self.refreshing.swap(true, Ordering::SeqCst) {
+            let (client, refreshing, session) = (self.client.clone(), Arc::clone(&self.refreshing), Arc::clone(&self.session));
             self.runtime.spawn(async move {
                 // An answer of any kind will do.
-                let _ = client.inlay_hint_refresh().await;
+                if session.refresh_hints {
+                    let _ = client.inlay_hint_refresh().await;
+                }
+                if session.refresh_lenses {
+                    let _ = client.code_lens_refresh().await;
+                }
+                if session.refresh_tokens {
+                    let _ = client.semantic_tokens_refresh().await;
+                }
                 refreshing.store(false, Ordering::SeqCst);
             });
         }
@@ -164,13 +215,17 @@ impl Owner {
                 }
             }
             Event::Close { path } => {
+                self.to_pull.remove(&path);
                 if let Some(document) = Arc::make_mut(&mut self.documents).close(&path) {
-                    self.published.clear(&document.uri);
+                    if !self.session.pulls_findings {
+                        self.published.clear(&document.uri);
+                    }
                     self.workspace.close(&path);
                 }
             }
-            Event::Folders(folders) => {
-                for folder in folders {
+            Event::Folders { opened, closed } => {
+                self.close_folders(&closed);
+                for folder in opened {
                     let root = self.workspace.open_root(&folder, &folder);
                     self.roots.insert(root);
                     self.folders.insert(folder);
@@ -196,7 +251,7 @@ impl Owner {
             Event::Settings(settings) => {
                 if *self.settings != settings {
                     self.settings = Arc::new(settings);
-                    self.refresh_hints();
+                    self.refresh();
                 }
             }
             Event::Question(_) => (),
@@ -229,13 +284,37 @@ impl Owner {
         }
     }
 
+    /// Forgets what only these folders brought.
+    fn close_folders(&mut self, closed: &[Utf8PathBuf]) {
+        for folder in closed {
+            self.folders.remove(folder);
+        }
+        let is_left = |root: &Utf8PathBuf| {
+            closed.iter().any(|folder| root.starts_with(folder)) && !self.folders.iter().any(|folder| root.starts_with(folder))
+        };
+        let left: Vec<Utf8PathBuf> = self.roots.iter().filter(|root| is_left(root)).cloned().collect();
+        for root in left {
+            self.workspace.close_root(&root);
+            self.roots.remove(&root);
+        }
+    }
+
     fn reread(&mut self, path: &Utf8Path) {
         match path.parent() {
             Some(folder) if path.file_name() == Some(CONFIGURATION_FILE) => {
                 self.workspace.open_root(folder, folder);
             }
             _ if path.extension() == Some("prep") => self.workspace.reread(path),
-            _ => (),
+            // Something came into a folder or left it, or the folder itself is gone.
+            _ => {
+                let known = self.snapshot.as_ref().map(|known| known.files.values().map(|file| file.path.clone()).collect());
+                let known: Vec<Utf8PathBuf> = known.unwrap_or_default();
+                known.iter().filter(|file| file.starts_with(path)).for_each(|file| self.workspace.reread(file));
+                let around: Vec<Utf8PathBuf> = self.roots.iter().filter(|root| path.starts_with(root)).cloned().collect();
+                for root in around.into_iter().filter(|_| path.is_dir()) {
+                    self.workspace.open_root(&root, &root);
+                }
+            }
         }
     }
 
@@ -276,16 +355,38 @@ impl Owner {
     fn publish(&mut self) {
         let Ok(snapshot) = &self.snapshot else { return };
         let view = self.view(Arc::clone(snapshot));
+        if self.session.pulls_findings {
+            return self.ask_to_pull(&view);
+        }
         for (path, document) in view.documents.iter() {
             if self.revisions.latest(path) == document.revision {
                 let findings = view.snapshot.file_by_path(path).map(|file| to_proto::findings(&view, file));
                 self.published.publish(&document.uri, document.version, findings.unwrap_or_default());
             }
         }
+        let mut configurations = BTreeSet::new();
         for root in view.snapshot.roots.values() {
             if let Some(uri) = to_proto::uri(&root.path.join(CONFIGURATION_FILE)) {
                 self.published.publish_file(&uri, to_proto::configuration_errors(&root.configuration.errors));
+                configurations.insert(uri);
             }
+        }
+        self.published.keep_files(&configurations);
+    }
+
+    /// Asks a client that pulls findings to do so again, where those of a text are other although the text is the same: after
+    /// its own changes it asks unbidden.
+    fn ask_to_pull(&mut self, view: &View) {
+        let mut moved = false;
+        for (path, document) in view.documents.iter().filter(|(path, document)| self.revisions.latest(path) == document.revision) {
+            let findings = view.snapshot.file_by_path(path).map(|file| to_proto::findings(view, file)).unwrap_or_default();
+            let now = (document.version, to_proto::result_id(&findings));
+            let before = self.to_pull.insert(path.to_owned(), now.clone());
+            moved |= before.is_some_and(|before| before.0 == now.0 && before.1 != now.1);
+        }
+        if moved {
+            let client = self.client.clone();
+            self.runtime.spawn(async move { client.workspace_diagnostic_refresh().await });
         }
     }
 }

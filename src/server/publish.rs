@@ -1,7 +1,7 @@
-//! What the client has been told of each text. Findings are pushed, never offered for pulling: every client takes pushed
-//! ones, and a client that got both would show each finding twice.
+//! What the client has been told of each text, where findings are pushed. A client that pulls them is pushed none: it would
+//! show each finding twice.
 
-use std::collections::HashMap;
+use std::collections::{BTreeSet, HashMap};
 
 use futures::executor::block_on;
 use tower_lsp::Client;
@@ -36,6 +36,15 @@ impl Published {
         if !known {
             self.last.insert(uri.clone(), told.clone());
             self.send(uri, told);
+        }
+    }
+
+    /// Clears the findings of files that it need not have open, except of those that are still there.
+    pub fn keep_files(&mut self, there: &BTreeSet<Url>) {
+        let is_gone = |(uri, (version, _)): (&Url, &(Option<i32>, Vec<Diagnostic>))| version.is_none() && !there.contains(uri);
+        let gone: Vec<Url> = self.last.iter().filter(|one| is_gone(*one)).map(|(uri, _)| uri.clone()).collect();
+        for uri in gone {
+            self.clear(&uri);
         }
     }
 

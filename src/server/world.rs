@@ -33,8 +33,8 @@ pub enum Event {
     Save,
     /// Closed a text.
     Close { path: Utf8PathBuf },
-    /// Opened folders.
-    Folders(Vec<Utf8PathBuf>),
+    /// Opened and closed folders.
+    Folders { opened: Vec<Utf8PathBuf>, closed: Vec<Utf8PathBuf> },
     /// Saw files change on disk.
     Disk(Vec<Utf8PathBuf>),
     /// Was told the user's settings.
@@ -90,7 +90,7 @@ impl World {
         if let Err(error) = thread::Builder::new().name("world".into()).stack_size(STACK).spawn(move || owner.run()) {
             log::write(format_args!("no thread for the world: {error}"));
         }
-        world.push(Event::Folders(world.session.folders.clone()));
+        world.push(Event::Folders { opened: world.session.folders.clone(), closed: Vec::new() });
         world
     }
 
@@ -125,9 +125,11 @@ impl World {
         self.push(Event::Save);
     }
 
-    /// The client opened folders.
-    pub fn folders(&self, folders: impl Iterator<Item = Url>) {
-        self.push(Event::Folders(folders.filter_map(|uri| from_proto::file_path(&uri)).collect()));
+    /// The client opened and closed folders.
+    pub fn folders(&self, opened: impl Iterator<Item = Url>, closed: impl Iterator<Item = Url>) {
+        let opened = opened.filter_map(|uri| from_proto::file_path(&uri)).collect();
+        let closed = closed.filter_map(|uri| from_proto::file_path(&uri)).collect();
+        self.push(Event::Folders { opened, closed });
     }
 
     /// The client saw files change on disk.

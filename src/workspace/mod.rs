@@ -153,6 +153,21 @@ impl Workspace {
         self.read(path, &root)
     }
 
+    /// Forgets a root that is no longer open, with its files. Those that an editor still holds stay; what they use is read
+    /// again when it is asked for.
+    pub fn close_root(&mut self, root: &Utf8Path) {
+        let of_root: Vec<FileId> = self.root_of.iter().filter(|(_, of)| of.as_path() == root).map(|(id, _)| *id).collect();
+        let is_open = |id: &FileId| self.texts.get(id).is_some_and(|entry| entry.open.is_some());
+        let (open, closed): (Vec<FileId>, Vec<FileId>) = of_root.into_iter().partition(is_open);
+        for id in closed {
+            self.texts.remove(&id);
+            self.root_of.remove(&id);
+        }
+        if open.is_empty() {
+            self.roots.remove(root);
+        }
+    }
+
     /// Reads the configuration of a root again.
     pub fn reload_configuration(&mut self, root: &Utf8Path) {
         let read = Configuration::read(self.reader.as_ref(), root);

@@ -9,12 +9,14 @@ use serde_json::{Value, json};
 use crate::client::Client;
 
 /// A folder with a small library of recipes, removed at the end.
-struct Library {
-    folder: PathBuf,
+pub struct Library {
+    /// Where it is.
+    pub folder: PathBuf,
 }
 
 impl Library {
-    fn new(name: &str) -> Library {
+    /// A new one.
+    pub fn new(name: &str) -> Library {
         let folder = std::env::temp_dir().join(format!("scruple-protocol-{name}-{}", std::process::id()));
         let _ = fs::remove_dir_all(&folder);
         fs::create_dir_all(folder.join("cache")).unwrap();
@@ -24,11 +26,13 @@ impl Library {
         Library { folder: folder.canonicalize().unwrap() }
     }
 
-    fn uri(&self, file: &str) -> String {
+    /// The address of a file.
+    pub fn uri(&self, file: &str) -> String {
         format!("file://{}/{file}", self.folder.display())
     }
 
-    fn client(&self, mut capabilities: Value) -> Client {
+    /// A client that has it open.
+    pub fn client(&self, mut capabilities: Value) -> Client {
         let cache = self.folder.join("cache");
         let mut client = Client::start_with(&[("XDG_CACHE_HOME", cache.to_str().unwrap())]);
         if capabilities.get("textDocument").is_none() {
@@ -38,7 +42,8 @@ impl Library {
         client
     }
 
-    fn open(&self, client: &mut Client, file: &str) -> String {
+    /// Opens one of its files.
+    pub fn open(&self, client: &mut Client, file: &str) -> String {
         let uri = self.uri(file);
         client.open(&uri, &fs::read_to_string(self.folder.join(file)).unwrap());
         uri
@@ -73,11 +78,13 @@ solution Fraction
     q.s.       water to 1 L
 ";
 
-fn at(uri: &str, line: u32, character: u32) -> Value {
+/// A place, as requests name it.
+pub fn at(uri: &str, line: u32, character: u32) -> Value {
     json!({ "textDocument": { "uri": uri }, "position": { "line": line, "character": character } })
 }
 
-fn codes(findings: &[Value]) -> Vec<&str> {
+/// The codes of findings.
+pub fn codes(findings: &[Value]) -> Vec<&str> {
     findings.iter().filter_map(|finding| finding["code"].as_str()).collect()
 }
 

@@ -4,4 +4,5 @@
 mod client;
 mod features;
 mod lifecycle;
+mod manners;
 mod texts;

@@ -12,7 +12,7 @@ use super::quantities::{by_molar_mass, conversions, quantity_at};
 use super::target::{Target, Thing, target};
 use super::words::{self, Word, WordKind};
 use crate::finding::Code;
-use crate::model::{Body, Definition, molar_mass};
+use crate::model::{Body, Definition, NameKey, Namespace, molar_mass};
 use crate::syntax::formula;
 use crate::syntax::tree::{Statement, TokenKind};
 use crate::text::{FileId, Span};
@@ -40,6 +40,18 @@ pub fn hover(snapshot: &Snapshot, file: FileId, offset: usize) -> Option<Hover> 
         return None;
     }
     Some(Hover { span: target.span, markdown: page.markdown(), plain: page.plain() })
+}
+
+/// What is told of a thing that completion offers in a file, by its name. `pure` asks for the substance of that name rather
+/// than a bottle of it.
+pub fn hover_of_completion(snapshot: &Snapshot, file: FileId, name: &str, namespace: Namespace, pure: bool) -> Option<Hover> {
+    let found = super::target::find(snapshot, file, namespace, &NameKey::new(name), name, pure);
+    let page = match found.as_slice() {
+        [definition] => things::page(snapshot, file, definition, Some((name, Page::new()))),
+        _ if namespace == Namespace::Constituent => things::constituent_without_block(snapshot, file, name)?,
+        _ => return None,
+    };
+    Some(Hover { span: Span::empty(0), markdown: page.markdown(), plain: page.plain() })
 }
 
 fn page(snapshot: &Snapshot, target: &Target) -> Option<Page> {

@@ -23,6 +23,8 @@ pub fn code_actions(view: &View, file: &FileState, span: Span, context: &CodeAct
         let kind = match action.kind {
             ActionKind::QuickFix => CodeActionKind::QUICKFIX,
             ActionKind::Rewrite => CodeActionKind::REFACTOR_REWRITE,
+            ActionKind::Extract => CodeActionKind::REFACTOR_EXTRACT,
+            ActionKind::Inline => CodeActionKind::REFACTOR_INLINE,
         };
         if !is_wanted(&kind, context) {
             return None;

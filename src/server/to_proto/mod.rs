@@ -4,9 +4,13 @@
 mod actions;
 mod completion;
 mod findings;
+mod hierarchy;
 mod hints;
 mod hover;
 mod navigation;
+mod pulled;
+mod sheet;
+mod signature;
 mod symbols;
 mod tokens;
 
@@ -14,11 +18,15 @@ use camino::Utf8Path;
 use tower_lsp::lsp_types::{MarkupContent, MarkupKind, Position, Range, TextEdit, Url};
 
 pub use actions::{code_actions, workspace_edit};
-pub use completion::completions;
+pub use completion::{completions, resolved};
 pub use findings::{configuration_errors, findings};
+pub use hierarchy::{code_lenses, incoming_calls, outgoing_calls, prepare_call_hierarchy, told};
 pub use hints::inlay_hints;
 pub use hover::hover;
 pub use navigation::{definitions, folding_ranges, highlights, links, references, selection_range};
+pub use pulled::{document_report, result_id, workspace_report};
+pub use sheet::{RecipeSheet, recipe_sheet};
+pub use signature::signature_help;
 pub use symbols::{document_symbols, workspace_symbols};
 pub use tokens::{semantic_tokens, token_legend};
 

@@ -1,13 +1,18 @@
 //! Changes that the editor offers: the fixes of findings, and other ways to state what a line states.
 
-use super::cursor::{Cursor, statement_span};
-use super::values::{Values, measured_out};
+mod amounts;
+mod expectations;
+mod forms;
+mod pairs;
+mod scale;
+mod site;
+mod stocks;
+
 use crate::finding::{Code, Edit, EditPlace, Level};
-use crate::model::{Action, Addition};
 use crate::syntax::tree::Content;
 use crate::text::{FileId, Span};
-use crate::units::format;
 use crate::workspace::{Located, Snapshot};
+use site::Site;
 
 /// What a change is for.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
@@ -16,6 +21,10 @@ pub enum ActionKind {
     QuickFix,
     /// It states the same in another way, or writes a computed value down.
     Rewrite,
+    /// It takes a part out as a recipe of its own.
+    Extract,
+    /// It puts a recipe's parts in its place.
+    Inline,
 }
 
 /// A replacement in a file.
@@ -58,9 +67,17 @@ pub fn code_actions(snapshot: &Snapshot, file: FileId, range: Span) -> Vec<CodeA
     for (index, located) in &touching {
         actions.extend(accept(snapshot, file, *index, located));
     }
-    actions.extend(rewrites(snapshot, file, range.start).unwrap_or_default());
+    if let Some(site) = Site::new(snapshot, file, range.start) {
+        for offer in OFFERS {
+            actions.extend(offer(&site));
+        }
+    }
     actions
 }
+
+/// Ways to change a recipe that answer no finding, in the order in which they are offered.
+const OFFERS: &[fn(&Site) -> Vec<CodeAction>] =
+    &[amounts::offers, forms::offers, pairs::offers, stocks::offers, expectations::offers, scale::offers];
 
 /// The fixes that need no thought: those of spelling and characters, each the only fix of its finding.
 pub fn fix_all(snapshot: &Snapshot, file: FileId) -> Vec<FileEdit> {
@@ -123,50 +140,6 @@ fn accept(snapshot: &Snapshot, file: FileId, index: usize, located: &Located) ->
     })
 }
 
-/// Other ways to state what the line at an offset states.
-fn rewrites(snapshot: &Snapshot, file: FileId, offset: usize) -> Option<Vec<CodeAction>> {
-    let cursor = Cursor::new(snapshot, file, offset)?;
-    let values = Values::of(snapshot, file, cursor.block_index)?;
-    let (index, entry) = values.entry_on(cursor.line_index)?;
-    let outcome = values.single()?;
-    let rewrite = |title: String, span: Span, text: String| CodeAction {
-        title,
-        kind: ActionKind::Rewrite,
-        edits: vec![FileEdit { file, span: cursor.absolute(span), text }],
-        finding: None,
-        is_preferred: false,
-    };
-    let mut actions = Vec::new();
-    let lines: Vec<_> = outcome.lines.iter().filter(|line| line.entry == index).collect();
-    match (&entry.action, lines.as_slice()) {
-        (Action::MakeUp(make_up), [line]) if values.is_adjusted(line) && make_up.qualifiers.about.is_none() => {
-            let amount = measured_out(line, 3);
-            let end = statement_span(cursor.line).end;
-            actions.push(rewrite(format!("Write `about {amount}` on the line"), Span::empty(end), format!(", about {amount}")));
-        }
-        (Action::Add(addition), [line]) => {
-            let Some(span) = only_amount(addition) else { return Some(actions) };
-            if values.states_concentration(addition) {
-                let amount = measured_out(line, 4);
-                actions.push(rewrite(format!("State what is measured out: {amount}"), span, amount));
-            } else if let Some(concentration) = line.concentration_mol_per_L.filter(|value| *value > 0.0) {
-                let amount = format::concentration(concentration, 4);
-                actions.push(rewrite(format!("State the concentration: {amount}"), span, amount));
-            }
-        }
-        _ => {}
-    }
-    Some(actions)
-}
-
-/// Where the one plain amount of a line stands.
-fn only_amount(addition: &Addition) -> Option<Span> {
-    match addition.amounts.as_slice() {
-        [amount] if addition.as_formula.is_none() && addition.qualifiers.from.is_none() && !addition.about => Some(amount.span),
-        _ => None,
-    }
-}
-
 #[cfg(test)]
 mod tests {
     use super::*;
@@ -199,6 +172,88 @@ mod tests {
     fn what_a_titrant_took_can_be_written_down() {
         let offered = check("solution A\n    made at    25 °C\n    900 mL     water\n    50 mmol/L  Tris\n    q.s.       1 mol/L hydrochloric a‸cid to pH 8.10 # slowly\n    q.s.       water to 1 L\n");
         assert!(offered.iter().any(|(title, line)| title.starts_with("Write `about 2") && line.contains("to pH 8.10, about 2") && line.ends_with(" mL # slowly")), "{offered:?}");
+    }
+
+    /// The whole text after the offered change whose title begins so.
+    fn changed(text: &str, title: &str) -> String {
+        let fixture = fixture(text);
+        let actions = code_actions(&fixture.snapshot, fixture.file, Span::empty(fixture.offset));
+        let Some(action) = actions.iter().find(|action| action.title.starts_with(title)) else {
+            panic!("{title} is not among {:?}", actions.iter().map(|action| &action.title).collect::<Vec<_>>())
+        };
+        applied(&fixture.text, action.edits.iter().map(|edit| (edit.span, edit.text.clone())))
+    }
+
+    /// The pH of the solution of this name.
+    fn ph(text: &str, name: &str) -> f64 {
+        let fixture = fixture(text);
+        let file = fixture.snapshot.file(fixture.file).unwrap();
+        let index = file.model.blocks.iter().position(|block| block.name.as_ref().is_some_and(|own| own.text == name)).unwrap();
+        let values = crate::editor::values::Values::of(&fixture.snapshot, fixture.file, index).unwrap();
+        let outcome = values.single().unwrap_or_else(|| panic!("no values:\n{text}\n{:#?}", fixture.snapshot.findings(fixture.file)));
+        outcome.finished.as_ref().unwrap().pH()
+    }
+
+    #[test]
+    fn another_hydrate_or_salt_keeps_the_moles() {
+        let text = "solution A\n    made at    25 °C\n    13.61 g    sodium acetate trihyd‸rate\n    q.s.       water to 1 L\n";
+        // 13.61 g · 82.034 / 136.079 = 8.2047 g (CH3COONa, standard atomic weights of IUPAC 2021).
+        assert!(changed(text, "Take 8.20").contains("    8.205 g    sodium acetate"), "{}", changed(text, "Take 8.20"));
+        // 98.14 g/mol of potassium acetate: 13.61 · 98.14 / 136.08 = 9.815 g.
+        assert!(changed(text, "Take 9.81").contains("potassium acetate"));
+        let stated = "solution A\n    made at    25 °C\n    25 mmol/L  disodium hydrogen phosph‸ate dihydrate\n    q.s.       water to 1 L\n";
+        assert!(changed(stated, "Take disodium hydrogen phosphate dodecahydrate").contains("    25 mmol/L  disodium hydrogen phosphate dodecahydrate\n"));
+        let titles: Vec<String> = check(stated).into_iter().map(|(title, _)| title).collect();
+        assert!(!titles.iter().any(|title| title.contains("dihydrogen") || title.contains("trisodium")), "other hydrogens are another pH: {titles:?}");
+    }
+
+    #[test]
+    fn a_pair_becomes_titrated_and_a_titrated_buffer_a_pair() {
+        let pair = "solution A\n    made at    25 °C\n    50 mmol/L  Tris / Tris hydro‸chloride to pH 8.10\n    q.s.       water to 1 L\n";
+        let titrated = changed(pair, "Titrate Tris with hydrochloric acid");
+        assert!(titrated.contains("    50 mmol/L  Tris\n    q.s.       1 mol/L hydrochloric acid to pH 8.10\n"), "{titrated}");
+        assert!((ph(&titrated, "A") - 8.10).abs() < 0.005);
+        let back = changed(&titrated.replacen("hydrochloric acid", "hydrochloric‸ acid", 1), "Weigh Tris and Tris hydrochloride");
+        assert_eq!(back, pair.replace('‸', ""));
+        let phosphate = "solution A\n    made at    25 °C\n    900 mL     water\n    3.000 g    sodium dihydrogen phosphate\n    q.s.       1 mol/L sodium hydrox‸ide to pH 7.00\n    q.s.       water to 1 L\n";
+        let weighed = changed(phosphate, "Weigh sodium dihydrogen phosphate and disodium hydrogen phosphate");
+        // 3.000 g in a litre, 119.9755 g/mol by the standard atomic weights (IUPAC 2021): 25.005 mmol/L.
+        assert!(weighed.contains("    25.01 mmol/L sodium dihydrogen phosphate / disodium hydrogen phosphate to pH 7.00\n    q.s.       water"), "{weighed}");
+    }
+
+    #[test]
+    fn a_part_is_taken_out_as_a_stock_and_put_in_again() {
+        let text = "solution A\n    made at    25 °C\n    2 mmol/L   magnesium chloride hexahy‸drate\n    20 mmol/L  Tris\n    q.s.       water to 1 L\n";
+        let with_stock = changed(text, "Take magnesium chloride hexahydrate out as a stock, 100 times");
+        assert!(with_stock.starts_with("solution Magnesium chloride hexahydrate stock\n    made at    25 °C\n    200.0 mmol/L magnesium chloride hexahydrate\n    q.s.       water to 100 mL\n\nsolution A\n"), "{with_stock}");
+        assert!(with_stock.contains("    10.00 mL   Magnesium chloride hexahydrate stock\n"), "{with_stock}");
+        assert!((ph(&with_stock, "A") - ph(&text.replace('‸', ""), "A")).abs() < 0.002);
+        let marked = with_stock.replacen("    10.00 mL   Magnesium", "    10.00 mL   Magn‸esium", 1);
+        let again = changed(&marked, "Put in what Magnesium chloride hexahydrate stock holds");
+        // 2 mmol of MgCl2·6H2O, 203.30 g/mol.
+        assert!(again.contains("    406.6 mg   magnesium chloride hexahydrate\n"), "{again}");
+    }
+
+    #[test]
+    fn the_present_values_can_be_expected() {
+        let text = "solution A‸\n    made at    25 °C\n    50 mmol/L  Tris / Tris hydrochloride to pH 8.10\n    q.s.       water to 1 L\n";
+        let expected = changed(text, "Expect pH 8.10");
+        assert!(expected.ends_with("to 1 L\n    expect     pH 8.10 ± 0.05\n"), "{expected}");
+        for title in ["Expect ionic strength", "Expect buffer capacity"] {
+            let fixture = fixture(&changed(text, title));
+            assert!(fixture.snapshot.findings(fixture.file).iter().all(|located| located.finding.level != Level::Error), "{title}");
+        }
+        let again = expected.replacen("solution A", "solution A‸", 1);
+        assert!(!check(&again).iter().any(|(title, _)| title.starts_with("Expect pH")), "it is expected already");
+    }
+
+    #[test]
+    fn a_recipe_is_made_for_another_amount() {
+        let text = "solution A‸\n    made at    25 °C\n    2.5 g      sodium chloride, ± 0.01 g\n    20 mmol/L  Tris\n    q.s.       1 mol/L hydrochloric acid to pH 8.10, about 2 mL\n    q.s.       water to 500 mL\n    step       Stir for 10 min in 1 L.\n    stored at  4 °C for 2 weeks\n";
+        let twice = changed(text, "Make twice as much");
+        let expected = text.replace('‸', "").replace("2.5 g ", "5.0 g ").replace("0.01 g", "0.02 g").replace("about 2 mL", "about 4 mL").replace("500 mL", "1000 mL");
+        assert_eq!(twice, expected);
+        assert!((ph(&twice, "A") - ph(&text.replace('‸', ""), "A")).abs() < 1e-6);
     }
 
     #[test]
