@@ -1,6 +1,9 @@
 // Starts the language server and gives it what only this editor has: pages of the built-in library, lists of uses, the sheet
 // beside the recipe.
 
+import { execFile } from "node:child_process";
+import { promisify } from "node:util";
+
 import * as vscode from "vscode";
 import { LanguageClient, type LanguageClientOptions, type ServerOptions, type StaticFeature } from "vscode-languageclient/node";
 
@@ -42,6 +45,11 @@ async function start(): Promise<void> {
   const settings = vscode.workspace.getConfiguration("scruple.server");
   const command = settings.get("path", "scruple");
   const log = settings.get("log", "");
+  try {
+    await promisify(execFile)(command, ["--version"]);
+  } catch (error) {
+    return complain(command, error);
+  }
   const server: ServerOptions = { command, args: log === "" ? ["serve"] : ["serve", "--log", log] };
   const options: LanguageClientOptions = {
     documentSelector: [
@@ -54,17 +62,18 @@ async function start(): Promise<void> {
   };
   client = new LanguageClient("scruple", "scruple", server, options);
   client.registerFeature(announcement);
-  try {
-    await client.start();
-  } catch (error) {
-    const answer = await vscode.window.showErrorMessage(
-      `The program “${command}” could not be started: ${error instanceof Error ? error.message : String(error)}`,
-      "Open settings",
-    );
+  await client.start();
+}
+
+/** Says why there is no server, and leads to where it can be mended. The rest of the extension works without it. */
+function complain(command: string, error: unknown): void {
+  const reason = error instanceof Error ? error.message : String(error);
+  const message = `The program “${command}” could not be started: ${reason}. Install it, or name it in the settings.`;
+  void vscode.window.showErrorMessage(message, "Open settings").then((answer) => {
     if (answer !== undefined) {
-      await vscode.commands.executeCommand("workbench.action.openSettings", "scruple.server.path");
+      void vscode.commands.executeCommand("workbench.action.openSettings", "scruple.server.path");
     }
-  }
+  });
 }
 
 /** Tells the server what this client does itself. */
