@@ -4,7 +4,7 @@ use scruple::syntax::parse;
 use scruple::syntax::tree::*;
 
 /// Lines without fault, each with the beginning of its statement's debug form.
-const LAWFUL: [(&str, &str); 136] = [
+const LAWFUL: [(&str, &str); 150] = [
     ("language 1", "Language(Given"),
     ("use \"stocks/acids.prep\"", "Use(Given"),
     ("solution Tidal column eluent", "Header"),
@@ -13,6 +13,8 @@ const LAWFUL: [(&str, &str); 136] = [
     ("substance 2-(N-morpholino)ethanesulfonic acid", "Header"),
     ("ion EDTA", "Header"),
     ("solid calcium carbonate", "Header"),
+    ("danger bleach with acid", "Header"),
+    ("group thiols", "Header"),
     ("lab North bench", "Header"),
     ("3.12 g sodium chloride", "Ingredient"),
     ("about 800 mL water", "Ingredient(Ingredient { about: true"),
@@ -131,7 +133,19 @@ const LAWFUL: [(&str, &str); 136] = [
     ("activity 250 U/µL", "Activity(Given"),
     ("hazard H314, H360FD, EUH031", "Hazard"),
     ("keep away from acids, strong oxidisers", "KeepAwayFrom"),
+    ("heat of solution -67.0 kJ/mol at 35 % w/w, source handbook", "HeatOfSolution"),
+    ("heat of solution 15.4 kJ/mol", "HeatOfSolution"),
     ("inert", "Inert"),
+    ("holds glycine, Tris", "Holds"),
+    ("with hypochlorite, chloramine-T trihydrate, at least 1 mmol/L", "With"),
+    ("with EDC hydrochloride", "With"),
+    ("while pH at most 5.5", "While"),
+    ("while pH 7.2 to 8.2", "While"),
+    ("even in passing", "EvenInPassing"),
+    ("keeps 1.4 h at 20 °C", "Keeps"),
+    ("raises dangerous-together", "Raises(Given"),
+    ("because acid sets chlorine free, a toxic gas", "Because(Given"),
+    ("advice Keep the pH above 8, and acids away.", "Advice(Given"),
     ("pKa 7.198 ± 0.003, of dihydrogen phosphate, enthalpy 3.6 kJ/mol, heat capacity -230 J/(mol·K), source Goldberg 2002", "Pka"),
     ("pKa 3404.71/T - 14.8435 + 0.032786 T ± 0.003, of carbonic acid, from 0 °C to 50 °C", "Pka"),
     ("pKa 2548.6/T - 20.03159 + 3.2172 ln T", "Pka"),

@@ -23,7 +23,7 @@
   "Comments run from a number sign to the end of the line.")
 
 (defvar scruple-font-lock-keywords
-  `((,(concat "^" (regexp-opt '("use" "language" "solution" "bottle" "substance" "ion" "solid" "lab") 'words))
+  `((,(concat "^" (regexp-opt '("use" "language" "solution" "bottle" "substance" "ion" "solid" "danger" "group" "lab") 'words))
      . font-lock-keyword-face)
     (,(concat "^\\s-+" (regexp-opt '("q.s." "made at" "used at" "expect" "accept" "like" "without" "concentrate"
                                      "before use" "after autoclaving" "stored at" "stored below" "ready after"

@@ -3,6 +3,7 @@
 mod accept;
 mod amounts;
 mod buffering;
+mod dangers;
 mod definitions;
 mod expectations;
 mod forms;
@@ -94,6 +95,9 @@ pub const RULES: &[Rule] = &[
     temperature::temperature_not_stated,
     temperature::temperature_shift,
     buffering::weak_buffering,
+    dangers::dangers,
+    dangers::hot_when_made_up,
+    dangers::unmodelled_matters,
     range::outside_model_range,
     free_ions::steep_target,
     free_ions::metal_bound,

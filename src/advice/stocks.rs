@@ -36,7 +36,7 @@ fn keeps(recipe: &Recipe) -> Option<(f64, Anchor)> {
     stored.chain(within).min_by(|one, other| one.0.total_cmp(&other.0))
 }
 
-fn duration(seconds: f64) -> String {
+pub(super) fn duration(seconds: f64) -> String {
     let days = seconds / 86_400.0;
     if days < 2.0 {
         format!("{} h", format::plain((seconds / 360.0).round() / 10.0))

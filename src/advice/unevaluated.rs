@@ -18,7 +18,6 @@ pub(super) fn not_evaluated_yet(case: &Case, findings: &mut Vec<Finding>) {
             Statement::Open => "`open`",
             Statement::Under(_) => "A gas above the liquid",
             Statement::UsedAt(used) if used.under.is_some() => "A gas above the liquid",
-            Statement::KeepAwayFrom(_) => "`keep away from`",
             Statement::Header(header) if header.kind == crate::syntax::tree::BlockKind::Solid => "A solid that can precipitate",
             Statement::Balance(_) | Statement::Ware(_) | Statement::Meter(_) if matches!(case.block.body, Body::Lab(_)) => {
                 "Equipment"

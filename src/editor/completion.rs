@@ -296,7 +296,7 @@ mod tests {
         begins("solution A\n    ‸", &["q.s.", "about", "all"]);
         begins("solution A\n    exp‸", &["expect"]);
         begins("substance A\n    for‸", &["formula", "form"]);
-        begins("‸", &["solution", "bottle", "substance", "ion", "solid", "lab", "use"]);
+        begins("‸", &["solution", "bottle", "substance", "ion", "solid", "danger", "group", "lab", "use"]);
         begins("sol‸", &["solution", "solid"]);
         assert!(!labels("solution A\n    ‸").contains(&"pKa".to_owned()));
         assert_eq!(inserted("solution A\n    mad‸", "made at"), "    made at    ");

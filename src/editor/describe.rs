@@ -17,6 +17,8 @@ pub fn kind_word(kind: BlockKind) -> &'static str {
         BlockKind::Substance => "substance",
         BlockKind::Ion => "ion",
         BlockKind::Solid => "solid",
+        BlockKind::Danger => "danger",
+        BlockKind::Group => "group",
         BlockKind::Lab => "lab",
     }
 }
@@ -37,6 +39,8 @@ pub fn detail(snapshot: &Snapshot, file: FileId, index: usize, block: &Arc<Block
         Body::Substance(substance) => substance_detail(substance),
         Body::Ion(ion) => ion_detail(ion),
         Body::Solid(solid) => solid.formula.as_ref().map_or_else(String::new, |(formula, _)| formula.clone()),
+        Body::Danger(danger) => danger.raises.map_or_else(String::new, |code| code.name().to_owned()),
+        Body::Group(group) => format!("{} things", group.holds.len()),
         Body::Lab(lab) => lab.room.map_or_else(String::new, |room| {
             let (low, high) = room.value;
             format!("{} to {}", format::temperature(low), format::temperature(high))

@@ -110,6 +110,9 @@ pub fn names(statement: &Statement, kind: Option<BlockKind>) -> Vec<NameUse<'_>>
             found.extend(on.map(|name| NameUse::new(name, Ingredient).or(Constituent)));
         }
         S::Gives(list) => found.extend(list.iter().filter_map(|given| given_name(given, Constituent))),
+        S::Holds(list) => found.extend(list.iter().map(|name| NameUse::new(name, Constituent).or(Ingredient))),
+        S::With(side) => found.extend(side.names.iter().map(|name| NameUse::new(name, Constituent).or(Ingredient))),
+        S::While(line) => found.extend(line.property.given().and_then(property_name)),
         S::KeepAwayFrom(list) => found.extend(list.iter().map(|name| NameUse::new(name, Ingredient).or(Constituent))),
         S::ComplexWith(complex) => {
             found.extend(complex.partner.given().and_then(|given| given_name(given, Constituent)));

@@ -112,7 +112,7 @@ fn block_kind_of(kind: BlockKind) -> SemanticKind {
     match kind {
         BlockKind::Solution | BlockKind::Bottle => SemanticKind::Solution,
         BlockKind::Substance => SemanticKind::Substance,
-        BlockKind::Ion | BlockKind::Solid => SemanticKind::Constituent,
+        BlockKind::Ion | BlockKind::Solid | BlockKind::Danger | BlockKind::Group => SemanticKind::Constituent,
         BlockKind::Lab => SemanticKind::Lab,
     }
 }

@@ -43,6 +43,8 @@ const CHEMICAL: &[BlockKind] = &[BlockKind::Substance, BlockKind::Ion, BlockKind
 const NAMED: &[BlockKind] = &[BlockKind::Substance, BlockKind::Bottle, BlockKind::Ion, BlockKind::Solid];
 const ION: &[BlockKind] = &[BlockKind::Ion];
 const SOLID: &[BlockKind] = &[BlockKind::Solid];
+const DANGER: &[BlockKind] = &[BlockKind::Danger];
+const GROUP: &[BlockKind] = &[BlockKind::Group];
 const LAB: &[BlockKind] = &[BlockKind::Lab];
 
 const fn header(word: &'static str, form: &'static str, help: &'static str) -> Word {
@@ -73,6 +75,8 @@ pub const WORDS: &[Word] = &[
     header("substance", "substance NAME", "Opens the description of a pure substance."),
     header("ion", "ion NAME", "Opens the description of an ion in water, with its constants."),
     header("solid", "solid NAME", "Opens the description of a solid phase that can precipitate."),
+    header("danger", "danger NAME", "Opens the description of what must not come together, or does not keep."),
+    header("group", "group NAME", "Opens a list of things that behave alike, for dangers to name."),
     header("lab", "lab NAME", "Opens the description of a lab: its room temperature, balances, ware and meters."),
     statement("use", &[], "use \"PATH\"", "Makes the names of another file known in this one; the path is read from this file's folder."),
     statement("language", &[], "language 1", "Says for which edition of the language the file is written."),
@@ -140,7 +144,17 @@ pub const WORDS: &[Word] = &[
     statement("inert", SUBSTANCE, "inert", "It has mass and volume, and no effect on pH that the program works out."),
     statement("instead of the built-in", NAMED, "instead of the built-in", "Says that this definition is meant to replace the one of the built-in library."),
     statement("log Ksp", SOLID, "log Ksp VALUE", "Solubility product."),
-    statement("source", &[BlockKind::Bottle, BlockKind::Substance, BlockKind::Ion, BlockKind::Solid], "source TEXT", "Where the facts come from."),
+    statement("heat of solution", SUBSTANCE, "heat of solution VALUE [at STRENGTH]", "Enthalpy of dissolving a mole of it; negative where it warms."),
+    statement("source", &[BlockKind::Bottle, BlockKind::Substance, BlockKind::Ion, BlockKind::Solid, BlockKind::Danger, BlockKind::Group], "source TEXT", "Where the facts come from."),
+    // ── dangers and groups ──
+    statement("with", DANGER, "with NAME, NAME, at least QUANTITY", "One side of a danger; any of the names will do."),
+    statement("while", DANGER, "while PROPERTY RANGE", "What must hold in the vessel for the danger."),
+    statement("even in passing", DANGER, "even in passing", "It counts after every line, though a later line ends it."),
+    statement("keeps", DANGER, "keeps DURATION at T", "How long it keeps."),
+    statement("raises", DANGER, "raises CODE", "The finding that is raised."),
+    statement("because", DANGER, "because TEXT", "What happens; the finding says so."),
+    statement("advice", DANGER, "advice TEXT", "What to do; the finding says so."),
+    statement("holds", GROUP, "holds NAME, NAME", "What belongs to the group."),
     // ── labs ──
     statement("room", LAB, "room T to T", "The room's temperature; its middle is taken where a recipe does not say where it is made."),
     statement("balance", LAB, "balance readability QUANTITY, QUANTITY to QUANTITY", "A balance: its readability, and from where to where it weighs."),
@@ -280,7 +294,16 @@ pub fn of_statement(statement: &Statement) -> Option<&'static Word> {
         S::Activity(_) => "activity",
         S::Hazard(_) => "hazard",
         S::KeepAwayFrom(_) => "keep away from",
+        S::HeatOfSolution(_) => "heat of solution",
         S::Inert => "inert",
+        S::With(_) => "with",
+        S::While(_) => "while",
+        S::EvenInPassing => "even in passing",
+        S::Keeps(_) => "keeps",
+        S::Raises(_) => "raises",
+        S::Because(_) => "because",
+        S::Advice(_) => "advice",
+        S::Holds(_) => "holds",
         S::Pka(_) => "pKa",
         S::LogKsp(_) => "log Ksp",
         S::ComplexWith(_) => "complex with",

@@ -131,6 +131,7 @@ fn unknown(reference: &Reference, namespace: Namespace, scope: &Scope) -> Findin
         Namespace::Ingredient => "substance, bottle or solution",
         Namespace::Constituent => "ion or molecule",
         Namespace::Phase => "solid",
+        Namespace::Danger => "danger or group",
         Namespace::Lab => "lab",
     };
     let mut finding =

@@ -133,6 +133,22 @@ codes! {
     MetalBound, "metal-bound", Warning, "A metal that a chelator in excess binds.";
     OutsideModelRange, "outside-model-range", Warning, "A solution beyond the range of the model.";
     NoSolutionFound, "no-solution-found", Error, "Equations for which the solver found no answer.";
+    // ── What can hurt, react or not keep ──
+    DangerousTogether, "dangerous-together", Error, "Two things that must not meet in one vessel.";
+    ToxicGasFromAcid, "toxic-gas-from-acid", Error, "A toxic gas that this pH sets free.";
+    AcidBeforeWater, "acid-before-water", Error, "Water that runs into a concentrated acid or lye.";
+    HotWhenMadeUp, "hot-when-made-up", Warning, "A solution that is far from room temperature when it is made up to the mark.";
+    DecomposesInAcid, "decomposes-in-acid", Warning, "Something that falls apart at this pH.";
+    DoesNotKeep, "does-not-keep", Warning, "Something that does not last as long as the solution is kept.";
+    ReactsTogether, "reacts-together", Warning, "Two things that use each other up.";
+    RedoxNotComputed, "redox-not-computed", Hint, "An oxidiser and a reducer, whose reaction is not worked out.";
+    UnmodelledMatters, "unmodelled-matters", Warning, "A solute without formula, in an amount that can matter.";
+    BileSaltGels, "bile-salt-gels", Warning, "A bile salt that gels or falls out.";
+    SaltsOutInOrganic, "salts-out-in-organic", Warning, "A salt that falls out of this much organic solvent.";
+    PhSetInOrganic, "ph-set-in-organic", Warning, "A pH that is set with organic solvent in the beaker.";
+    VolumeContracts, "volume-contracts", Hint, "Liquids whose volumes do not add up.";
+    LightSensitive, "light-sensitive", Warning, "Something that light destroys, kept where light reaches it.";
+    AttacksGlass, "attacks-glass", Warning, "A solution that attacks the glass it is kept in.";
 }
 
 impl Code {

@@ -33,6 +33,21 @@ mod tests {
     }
 
     #[test]
+    fn every_substance_has_hazards_or_was_judged_to_need_none() {
+        let judged: std::collections::BTreeSet<&str> =
+            include_str!("data/not-classified.txt").lines().filter(|line| !line.starts_with('#')).collect();
+        let mut known = std::collections::BTreeSet::new();
+        for file in &built_in().files {
+            for block in &file.model.blocks {
+                let (Body::Substance(substance), Some(name)) = (&block.body, &block.name) else { continue };
+                known.insert(name.text.as_str());
+                assert_eq!(substance.hazards.is_empty(), judged.contains(name.text.as_str()), "{}", name.text);
+            }
+        }
+        assert!(judged.is_subset(&known), "{:?}", judged.difference(&known).collect::<Vec<_>>());
+    }
+
+    #[test]
     fn wordings_are_sentences_and_codes_stand_once() {
         let mut codes = std::collections::BTreeSet::new();
         for line in STATEMENTS.lines().filter(|line| !line.starts_with('#')) {

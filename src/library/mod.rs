@@ -2,6 +2,8 @@
 
 mod hazards;
 #[cfg(test)]
+mod dangers;
+#[cfg(test)]
 mod solids;
 
 pub use hazards::hazard_statement;
@@ -23,6 +25,11 @@ macro_rules! files {
 
 /// The files of the library in reading order: name and text.
 const FILES: &[(&str, &str)] = files![
+    "dangers-gases.prep",
+    "dangers-groups.prep",
+    "dangers-keeping.prep",
+    "dangers-mixtures.prep",
+    "dangers-reactions.prep",
     "ions-amines.prep",
     "ions-amino.prep",
     "ions-buffers.prep",

@@ -2,7 +2,7 @@
 
 use std::sync::Arc;
 
-use super::{Ion, Lab, NameKey, Recipe, Solid, Substance};
+use super::{Danger, Group, Ion, Lab, NameKey, Recipe, Solid, Substance};
 use crate::finding::{Anchor, Finding};
 use crate::syntax::tree::{BlockKind, Line};
 use crate::text::{FileId, Span};
@@ -83,6 +83,8 @@ pub enum Body {
     Substance(Substance),
     Ion(Ion),
     Solid(Solid),
+    Danger(Danger),
+    Group(Group),
     Lab(Lab),
 }
 

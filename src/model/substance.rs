@@ -26,6 +26,8 @@ pub struct Substance {
     pub molar_volume: Option<f64>,
     /// Solubilities: amount in its unit's base, unit, temperature in K.
     pub solubility: Vec<(super::Amount, Option<f64>)>,
+    /// Heats of solution: J/mol, and the mass fraction that is reached; none for much water.
+    pub heats_of_solution: Vec<(f64, Option<f64>)>,
     /// GHS hazard statements by code.
     pub hazards: Vec<String>,
     /// What it must not meet.
@@ -204,6 +206,7 @@ pub fn namespace(kind: BlockKind) -> Namespace {
         BlockKind::Solution | BlockKind::Bottle | BlockKind::Substance => Namespace::Ingredient,
         BlockKind::Ion => Namespace::Constituent,
         BlockKind::Solid => Namespace::Phase,
+        BlockKind::Danger | BlockKind::Group => Namespace::Danger,
         BlockKind::Lab => Namespace::Lab,
     }
 }
@@ -217,6 +220,8 @@ pub enum Namespace {
     Constituent,
     /// Solids.
     Phase,
+    /// Dangers and groups.
+    Danger,
     /// Labs.
     Lab,
 }

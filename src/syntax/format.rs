@@ -46,6 +46,8 @@ pub fn format_line(line: &Line, ending: &str) -> String {
                     | Statement::Gives(_)
                     | Statement::Hazard(_)
                     | Statement::KeepAwayFrom(_)
+                    | Statement::Holds(_)
+                    | Statement::With(_)
             );
             let too_long = || laid_out.split(['\n', '\r']).any(|row| row.chars().count() > LONGEST);
             if is_list && too_long() { lay_out(line, statement, indent, Some(ending)) } else { laid_out }

@@ -1,9 +1,9 @@
 //! Cuts a file into logical lines: a line and those after it that begin with a comma.
 
 /// First words of statements that hold free text to the line's end, and of headers: none is ever continued.
-const NEVER_CONTINUED: [&str; 16] = [
+const NEVER_CONTINUED: [&str; 20] = [
     "step", "note", "record", "document", "accept", "source", "supplier", "expires", "solution", "substance", "bottle",
-    "solid", "ion", "lab", "use", "language",
+    "solid", "ion", "danger", "group", "lab", "use", "language", "because", "advice",
 ];
 
 /// The logical lines of `text` in order, line breaks included. They cover the text exactly; an empty text has none.

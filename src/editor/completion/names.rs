@@ -100,6 +100,7 @@ fn draft(items: &Items, definition: &Definition, rank: u32) -> Draft {
         Body::Solid(_) => CompletionKind::Solid,
         Body::Lab(_) => CompletionKind::Lab,
         Body::Ion(_) => CompletionKind::Constituent,
+        Body::Danger(_) | Body::Group(_) => CompletionKind::Constituent,
         Body::Solution(_) | Body::None => CompletionKind::Solution,
     };
     Draft {

@@ -49,6 +49,8 @@ pub fn page(snapshot: &Snapshot, from: FileId, definition: &Definition, used: Op
         Body::Substance(substance) => self::substance(snapshot, from, definition, substance, &mut page),
         Body::Ion(ion) => self::ion(ion, &key, &mut page),
         Body::Solid(solid) => self::solid(solid, &mut page),
+        Body::Danger(danger) => self::danger(danger, &mut page),
+        Body::Group(group) => self::group(group, &mut page),
         Body::Lab(lab) => self::lab(lab, &mut page),
         Body::None => {}
     }
@@ -177,6 +179,28 @@ fn solid(solid: &Solid, page: &mut Page) {
     page.row_if("formula", solid.formula.as_ref().map(|(formula, _)| formula.clone()));
     page.row_if("log Ksp at 25 °C", solid.log_ksp.as_ref().map(constant_text));
     if let Some(source) = solid.log_ksp.as_ref().and_then(|constant| constant.source.as_ref()).or(solid.source.as_ref()) {
+        page.sentence(format!("Source: {source}."));
+    }
+}
+
+fn danger(danger: &Danger, page: &mut Page) {
+    for side in &danger.sides {
+        let names: Vec<&str> = side.names.iter().map(|name| name.text.as_str()).collect();
+        page.row_if("with", Some(names.join(", ")));
+    }
+    page.row_if("raises", danger.raises.map(|code| code.name().to_owned()));
+    if !danger.because.is_empty() {
+        page.sentence(format!("{}.", danger.because));
+    }
+    if let Some(source) = &danger.source {
+        page.sentence(format!("Source: {source}."));
+    }
+}
+
+fn group(group: &Group, page: &mut Page) {
+    let names: Vec<&str> = group.holds.iter().map(|name| name.text.as_str()).collect();
+    page.row_if("holds", Some(names.join(", ")));
+    if let Some(source) = &group.source {
         page.sentence(format!("Source: {source}."));
     }
 }

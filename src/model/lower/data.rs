@@ -44,6 +44,11 @@ impl Lowering {
                         substance.solubility.push((amount(value), kelvin));
                     }
                 }
+                Statement::HeatOfSolution(heat) => {
+                    let strength = heat.at.as_ref().and_then(|at| base_value(at, Dimension::MassFraction));
+                    let joules = measured(&heat.value, Dimension::MolarEnergy);
+                    substance.heats_of_solution.extend(joules.map(|joules| (joules, strength)));
+                }
                 Statement::Hazard(codes) => {
                     substance.hazards.extend(codes.iter().map(|code| code.text.clone()));
                 }

@@ -1,5 +1,6 @@
 //! From tree to meaning: cuts a file into blocks and lowers each; a block whose lines are the same is not lowered again.
 
+mod dangers;
 mod data;
 mod faults;
 mod lab;
@@ -101,7 +102,7 @@ fn lower_block(role: BlockRole, lines: Vec<Arc<Line>>) -> Block {
                 Anchor::new(0, span),
                 "This line opens a block, but not one that can be read; the lines below it belong to nothing.",
             )
-            .help("Begin the line with solution, bottle, substance, ion, solid or lab, or indent it if it belongs to the block above."),
+            .help("Begin the line with solution, bottle, substance, ion, solid, danger, group or lab, or indent it if it belongs to the block above."),
         );
     }
     let name = lines.first().and_then(|line| match &line.content {
@@ -122,6 +123,8 @@ fn lower_block(role: BlockRole, lines: Vec<Arc<Line>>) -> Block {
                 BlockKind::Substance => Body::Substance(lowering.substance(&lines)),
                 BlockKind::Ion => Body::Ion(lowering.ion(&lines)),
                 BlockKind::Solid => Body::Solid(lowering.solid(&lines)),
+                BlockKind::Danger => Body::Danger(lowering.danger(&lines)),
+                BlockKind::Group => Body::Group(lowering.group(&lines)),
                 BlockKind::Lab => Body::Lab(lowering.lab(&lines)),
             }
         }
@@ -196,6 +199,8 @@ fn place_of(role: &BlockRole) -> &'static str {
         BlockRole::Defines(BlockKind::Substance) => "in a substance",
         BlockRole::Defines(BlockKind::Ion) => "in an ion",
         BlockRole::Defines(BlockKind::Solid) => "in a solid",
+        BlockRole::Defines(BlockKind::Danger) => "in a danger",
+        BlockRole::Defines(BlockKind::Group) => "in a group",
         BlockRole::Defines(BlockKind::Lab) => "in a lab",
     }
 }

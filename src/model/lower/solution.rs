@@ -37,21 +37,33 @@ pub(super) fn home_of(statement: &Statement, role: &BlockRole) -> Option<&'stati
             "a substance, bottle, ion or solid",
         ),
         S::InsteadOfTheBuiltIn => (
-            &[BlockKind::Substance, BlockKind::Bottle, BlockKind::Ion, BlockKind::Solid, BlockKind::Solution],
-            "a substance, bottle, ion or solid",
+            &[
+                BlockKind::Substance,
+                BlockKind::Bottle,
+                BlockKind::Ion,
+                BlockKind::Solid,
+                BlockKind::Danger,
+                BlockKind::Group,
+                BlockKind::Solution,
+            ],
+            "a substance, bottle, ion, solid, danger or group",
         ),
         S::Cas(_) => (&[BlockKind::Substance, BlockKind::Bottle], "a substance"),
         S::Formula(_) => (&[BlockKind::Substance, BlockKind::Ion, BlockKind::Solid], "a substance, an ion or a solid"),
         S::MolarMass(_) => (&[BlockKind::Substance, BlockKind::Ion], "a substance or an ion"),
         S::Gives(_) => (&[BlockKind::Substance, BlockKind::Solid], "a substance or a solid"),
         S::MolarVolume(_) => (&[BlockKind::Ion, BlockKind::Substance], "an ion or a substance"),
-        S::Form(_) | S::Aqueous(_) | S::Solubility(_) | S::KeepAwayFrom(_) | S::Inert => {
+        S::Form(_) | S::Aqueous(_) | S::Solubility(_) | S::KeepAwayFrom(_) | S::HeatOfSolution(_) | S::Inert => {
             (&[BlockKind::Substance], "a substance")
         }
         S::Charge(_) | S::Pka(_) | S::ComplexWith(_) | S::InteractionWith(_) | S::MolarConductivity(_) => {
             (&[BlockKind::Ion], "an ion")
         }
         S::LogKsp(_) => (&[BlockKind::Solid], "a solid"),
+        S::With(_) | S::While(_) | S::EvenInPassing | S::Keeps(_) | S::Raises(_) | S::Because(_) | S::Advice(_) => {
+            (&[BlockKind::Danger], "a danger")
+        }
+        S::Holds(_) => (&[BlockKind::Group], "a group"),
         S::Room(_) | S::Balance(_) | S::Ware(_) | S::Meter(_) => (&[BlockKind::Lab], "a lab"),
     };
     (!homes.contains(kind)).then_some(words)
@@ -453,7 +465,7 @@ fn atmosphere(line: usize, gas: &tree::Gas) -> Option<Atmosphere> {
     })
 }
 
-fn expectation(line: usize, at: Anchor, expect: &tree::Expect) -> Option<Expectation> {
+pub(super) fn expectation(line: usize, at: Anchor, expect: &tree::Expect) -> Option<Expectation> {
     let limits = limits(expect.range.given()?);
     Some(Expectation {
         at,

@@ -62,6 +62,8 @@ fn kind(kind: editor::SymbolKind) -> SymbolKind {
         editor::SymbolKind::Block(BlockKind::Substance) => SymbolKind::CLASS,
         editor::SymbolKind::Block(BlockKind::Ion) => SymbolKind::CONSTANT,
         editor::SymbolKind::Block(BlockKind::Solid) => SymbolKind::STRUCT,
+        editor::SymbolKind::Block(BlockKind::Danger) => SymbolKind::EVENT,
+        editor::SymbolKind::Block(BlockKind::Group) => SymbolKind::ARRAY,
         editor::SymbolKind::Block(BlockKind::Lab) => SymbolKind::MODULE,
         editor::SymbolKind::Ingredient => SymbolKind::FIELD,
     }

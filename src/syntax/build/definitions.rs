@@ -13,6 +13,8 @@ impl<'t> Builder<'t> {
             "substance" => BlockKind::Substance,
             "ion" => BlockKind::Ion,
             "solid" => BlockKind::Solid,
+            "danger" => BlockKind::Danger,
+            "group" => BlockKind::Group,
             "lab" => BlockKind::Lab,
             _ => BlockKind::Solution,
         };
@@ -176,7 +178,7 @@ impl<'t> Builder<'t> {
         Statement::Density(Density { value, tolerance, at, parts })
     }
 
-    fn at_part(&mut self, node: &Node<'t>) -> Option<Slot<Quantity>> {
+    pub(super) fn at_part(&mut self, node: &Node<'t>) -> Option<Slot<Quantity>> {
         let at = child(node, Rule::at_part)?;
         Some(self.quantity_in(&at, span(&at).end, TEMPERATURE, Expected::Temperature))
     }

@@ -111,24 +111,7 @@ impl<'t> Builder<'t> {
 
     pub(super) fn accept(&mut self, node: &Node<'t>) -> Statement {
         let start = span(node).start + "accept".len();
-        let code = match child(node, Rule::code) {
-            Some(code) => {
-                let place = span(&code);
-                let written = self.of(place);
-                let is_code = written.starts_with(|letter: char| letter.is_ascii_lowercase())
-                    && written.chars().all(|letter| letter.is_ascii_lowercase() || letter.is_ascii_digit() || letter == '-');
-                if is_code {
-                    self.token(TokenKind::Code, place);
-                    Slot::Given(Text { span: place, text: written.to_owned() })
-                } else {
-                    self.token(TokenKind::Bad, place);
-                    let lower = written.to_lowercase();
-                    self.fault_with(place, FaultKind::Unexpected, vec![reading(place, lower, "")]);
-                    Slot::Bad(place)
-                }
-            }
-            None => self.absent(start, Expected::Code),
-        };
+        let code = self.code_in(node, start);
         let on = child(node, Rule::accept_on).map(|on| {
             match child(&on, Rule::quoted).or(child(&on, Rule::judged_name)) {
                 Some(name) => self.name_at(span(&name), TokenKind::Name),

@@ -6,8 +6,8 @@ use crate::syntax::spelling::nearest;
 use crate::units::Unit;
 
 /// Every word that can open a line, in its written form.
-pub(in crate::syntax) const FIRST_WORDS: [&str; 68] = [
-    "solution", "bottle", "substance", "ion", "solid", "lab", "use", "language", "about", "q.s.", "all", "or", "makes",
+pub(in crate::syntax) const FIRST_WORDS: [&str; 70] = [
+    "solution", "bottle", "substance", "ion", "solid", "danger", "group", "lab", "use", "language", "about", "q.s.", "all", "or", "makes",
     "cool to", "warm to", "drive off", "filter", "wait", "made at", "used at", "stored at", "stored below", "ready after",
     "use within", "sealed", "open", "under", "in", "like", "without", "concentrate", "before use", "after autoclaving",
     "expect", "standardise against", "found", "accept", "step", "record", "note", "document", "source", "supplier",
@@ -16,9 +16,11 @@ pub(in crate::syntax) const FIRST_WORDS: [&str; 68] = [
     "pKa", "log Ksp", "complex with", "interaction with", "room", "balance", "flask",
 ];
 
-/// More words that can open a line: ware and meters.
-pub(in crate::syntax) const MORE_FIRST_WORDS: [&str; 7] =
-    ["cylinder", "pipette", "burette", "vessel", "pH meter", "conductivity meter", "osmometer"];
+/// More words that can open a line: ware, meters, dangers.
+pub(in crate::syntax) const MORE_FIRST_WORDS: [&str; 16] = [
+    "cylinder", "pipette", "burette", "vessel", "pH meter", "conductivity meter", "osmometer", "heat of solution", "holds", "with",
+    "while", "even in passing", "keeps", "raises", "because", "advice",
+];
 
 impl Builder<'_> {
     pub(super) fn junk(&mut self, place: Span) -> Content {

@@ -2,6 +2,7 @@
 
 mod conditions;
 mod constants;
+mod dangers;
 mod definitions;
 mod expectations;
 mod gases;

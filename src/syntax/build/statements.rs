@@ -73,6 +73,7 @@ impl<'t> Builder<'t> {
             Rule::solubility => self.solubility(&node),
             Rule::activity => self.activity(&node),
             Rule::hazard => self.hazards(&node),
+            Rule::heat_of_solution => self.heat_of_solution(&node),
             Rule::inert => Statement::Inert,
             Rule::pka => Statement::Pka(self.constant(&node, LOGARITHM)),
             Rule::log_ksp => Statement::LogKsp(self.constant(&node, LOGARITHM)),
@@ -80,6 +81,20 @@ impl<'t> Builder<'t> {
             Rule::interaction => self.interaction(&node),
             Rule::molar_conductivity => Statement::MolarConductivity(self.constant(&node, MOLAR_CONDUCTIVITY)),
             Rule::molar_volume => Statement::MolarVolume(self.constant(&node, MOLAR_VOLUME)),
+            Rule::holds => Statement::Holds(self.name_list(&node, TokenKind::Name, Expected::ConstituentName)),
+            Rule::with_line => self.side(&node),
+            Rule::while_line => match self.expect(&node) {
+                Statement::Expect(condition) => Statement::While(condition),
+                other => other,
+            },
+            Rule::even => {
+                self.second_word(&node, Rule::even_words);
+                Statement::EvenInPassing
+            }
+            Rule::keeps => self.keeps(&node),
+            Rule::raises => Statement::Raises(self.code_in(&node, end)),
+            Rule::because => Statement::Because(self.text_in(&node, end)),
+            Rule::advice => Statement::Advice(self.text_in(&node, end)),
             Rule::room => self.room(&node),
             Rule::balance => self.balance(&node),
             Rule::ware_line => self.ware_line(&node),

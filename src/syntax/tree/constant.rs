@@ -152,3 +152,14 @@ pub struct Solubility {
     /// The parts (source).
     pub parts: Vec<ConstantPart>,
 }
+
+/// `heat of solution -67.0 kJ/mol at 35 % w/w`: enthalpy of dissolving one mole of the substance to that strength.
+#[derive(Clone, Debug, PartialEq)]
+pub struct HeatOfSolution {
+    /// The enthalpy.
+    pub value: Slot<Measured>,
+    /// The strength reached; much water where none is said.
+    pub at: Option<Slot<Quantity>>,
+    /// The parts (source).
+    pub parts: Vec<ConstantPart>,
+}

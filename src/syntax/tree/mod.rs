@@ -4,6 +4,7 @@
 //! that logical line, so an equal line is an equal tree wherever it stands; [`Placed::start`] moves them into the file.
 
 mod constant;
+mod danger;
 mod expectation;
 mod fault;
 mod lab;
@@ -14,6 +15,7 @@ mod statement;
 use std::sync::Arc;
 
 pub use constant::*;
+pub use danger::*;
 pub use expectation::*;
 pub use fault::*;
 pub use lab::*;

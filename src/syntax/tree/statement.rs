@@ -1,6 +1,7 @@
 //! The statements, and the headers of blocks.
 
-use super::constant::{Aqueous, Complex, Constant, Density, Given, Measured, Partnered, Solubility};
+use super::constant::{Aqueous, Complex, Constant, Density, Given, HeatOfSolution, Measured, Partnered, Solubility};
+use super::danger::{Keeps, Side};
 use super::expectation::{Accept, Expect, Found};
 use super::lab::{Balance, Meter, WareLine};
 use super::part::{FormulaText, Name, Number, Quantity, Slot, TemperatureRange, Text};
@@ -72,6 +73,7 @@ pub enum Statement {
     Activity(Slot<Quantity>),
     Hazard(Vec<Text>),
     KeepAwayFrom(Vec<Name>),
+    HeatOfSolution(HeatOfSolution),
     Inert,
     Pka(Constant),
     LogKsp(Constant),
@@ -79,6 +81,15 @@ pub enum Statement {
     InteractionWith(Partnered),
     MolarConductivity(Constant),
     MolarVolume(Constant),
+    // ── dangers and groups ──
+    Holds(Vec<Name>),
+    With(Side),
+    While(Expect),
+    EvenInPassing,
+    Keeps(Keeps),
+    Raises(Slot<Text>),
+    Because(Slot<Text>),
+    Advice(Slot<Text>),
     // ── labs ──
     Room(Slot<TemperatureRange>),
     Balance(Slot<Balance>),
@@ -95,6 +106,8 @@ pub enum BlockKind {
     Substance,
     Ion,
     Solid,
+    Danger,
+    Group,
     Lab,
 }
 
