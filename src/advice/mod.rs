@@ -96,6 +96,7 @@ pub const RULES: &[Rule] = &[
     temperature::temperature_shift,
     buffering::weak_buffering,
     dangers::dangers,
+    dangers::keep_apart,
     dangers::hot_when_made_up,
     dangers::unmodelled_matters,
     range::outside_model_range,

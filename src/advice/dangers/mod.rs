@@ -9,7 +9,7 @@ use super::Case;
 use crate::chemistry::State;
 use crate::evaluate::{LineOutcome, Outcome, Role, property_value};
 use crate::finding::{Code, Finding};
-use crate::model::{Action, Body, Danger, GoalKind, Namespace, Recipe};
+use crate::model::{Action, Body, Danger, GoalKind, NameKey, Namespace, Recipe};
 use crate::units::format;
 use presence::{Beaker, Member, Present};
 
@@ -21,6 +21,9 @@ const DEFERS: &str = "The safety data sheet, local rules and qualified staff dec
 
 /// Words in the name of a container that keep light out.
 const DARK: &[&str] = &["amber", "brown", "dark", "opaque", "foil", "black", "steel", "alumin", "wrapped"];
+
+/// Dilute solutions are frozen below this, K. Common practice, no source.
+const FROZEN_K: f64 = 269.0;
 
 /// Every ten kelvin double the rate of most reactions. Common practice, no source.
 const KELVIN_THAT_DOUBLE: f64 = 10.0;
@@ -55,6 +58,30 @@ pub(super) fn dangers(case: &Case, findings: &mut Vec<Finding>) {
                 findings.push(finding);
             }
         }
+    }
+}
+
+/// What a substance of the author's own is to be kept away from, by its block.
+pub(super) fn keep_apart(case: &Case, findings: &mut Vec<Finding>) {
+    if !matches!(case.block.body, Body::Solution(_)) {
+        return;
+    }
+    let Some(outcome) = case.outcomes().next() else { return };
+    for solute in &outcome.solutes {
+        let own = case.context.scope.own.named(Namespace::Ingredient, &solute.definition.name);
+        let Some(Body::Substance(substance)) = own.iter().find(|one| one.key == solute.definition).map(|one| &one.block.body) else { continue };
+        let others = presence::members(case, &substance.keep_away_from);
+        let Some(other) = others.iter().find(|other| other.is_in(outcome)) else { continue };
+        let Some(line) = line_of(case, outcome, other) else { continue };
+        findings.push(
+            Finding::new(
+                Code::DangerousTogether,
+                line.at,
+                format!("{} stands in one vessel with {}: its block says to keep away from {}.", capital(&solute.name), line.name, other.name),
+            )
+            .help(format!("Keep them apart, or correct the block. {DEFERS}"))
+            .about(NameKey::new(&line.name).as_str()),
+        );
     }
 }
 
@@ -194,7 +221,7 @@ fn finding(case: &Case, outcome: &Outcome, danger: &Danger, code: Code, present:
     };
     let advice = danger.advice.as_deref().unwrap_or_default();
     let help = if defers(code) { format!("{advice} {DEFERS}") } else { advice.to_owned() };
-    let mut finding = Finding::new(code, last.at, message).help(help.trim().to_owned()).about(crate::model::NameKey::new(&last.name).as_str());
+    let mut finding = Finding::new(code, last.at, message).help(help.trim().to_owned()).about(NameKey::new(&last.name).as_str());
     for line in lines.iter().rev().skip(1) {
         finding = finding.related(line.at, "meets this");
     }
@@ -245,7 +272,8 @@ fn does_not_keep(case: &Case, recipe: &Recipe, outcome: &Outcome, danger: &Dange
         if line_of_entry(line.at.line) > line_of_entry(storage.at.line) {
             continue;
         }
-        let Some(kept) = storage.duration else { continue };
+        // What is frozen keeps: reactions in ice do not follow the rule for liquids.
+        let Some(kept) = storage.duration.filter(|_| storage.high > FROZEN_K) else { continue };
         // The row that was measured nearest to the storage temperature, carried there.
         let nearest = danger.keeps.iter().min_by(|one, other| {
             let off = |row: &(f64, Option<f64>)| row.1.map_or(0.0, |kelvin| (kelvin - storage.high).abs());
@@ -269,7 +297,7 @@ fn does_not_keep(case: &Case, recipe: &Recipe, outcome: &Outcome, danger: &Dange
             Finding::new(Code::DoesNotKeep, storage.at, message)
                 .help(danger.advice.clone().unwrap_or_default())
                 .related(line.at, "added here")
-                .about(crate::model::NameKey::new(&line.name).as_str()),
+                .about(NameKey::new(&line.name).as_str()),
         );
     }
     None
