@@ -7,7 +7,7 @@ mod water;
 
 use super::Case;
 use crate::chemistry::State;
-use crate::evaluate::{LineOutcome, Outcome, Role, property_value};
+use crate::evaluate::{LineOutcome, Outcome, Question, Role, property_value};
 use crate::finding::{Code, Finding};
 use crate::model::{Action, Body, Danger, GoalKind, NameKey, Namespace, Recipe};
 use crate::units::format;
@@ -154,7 +154,8 @@ fn meets<'m>(case: &Case, danger: &Danger, sides: &'m [Vec<Member>], beaker: &Be
     }
     let holds = danger.conditions.iter().all(|condition| {
         let Some(state) = beaker.state else { return false };
-        property_value(state, &condition.property, condition.unit, None, case.context).is_ok_and(|value| {
+        let question = Question { property: &condition.property, unit: condition.unit, as_formula: None, says_temperature: false };
+        property_value(state, &question, case.context).is_ok_and(|value| {
             condition.low.is_none_or(|low| value >= low) && condition.high.is_none_or(|high| value <= high)
         })
     });
