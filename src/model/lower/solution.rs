@@ -11,6 +11,12 @@ use crate::syntax::formula;
 use crate::syntax::tree::{self, Amounts, BlockKind, GasKind, Line, QualifierKind, Slot, Statement};
 use crate::units::Dimension;
 
+/// The blocks that define something others can name.
+const DEFINING: &[BlockKind] = {
+    use BlockKind::*;
+    &[Substance, Bottle, Ion, Solid, Danger, Group, Solution]
+};
+
 /// Where a statement belongs, when that is not in a block of this role.
 pub(super) fn home_of(statement: &Statement, role: &BlockRole) -> Option<&'static str> {
     use Statement as S;
@@ -32,22 +38,7 @@ pub(super) fn home_of(statement: &Statement, role: &BlockRole) -> Option<&'stati
         | S::UsedAt(_) | S::ReadyAfter(_) | S::UseWithin(_) | S::Sealed | S::Open | S::Under(_) | S::In(_)
         | S::Like(_) | S::Without(_) | S::Concentrate(_) | S::Expect(_) | S::StandardiseAgainst(_) | S::Found(_)
         | S::Step(_) | S::Record(_) => (&[BlockKind::Solution], "a solution"),
-        S::Also(_) => (
-            &[BlockKind::Substance, BlockKind::Bottle, BlockKind::Ion, BlockKind::Solid, BlockKind::Solution],
-            "a substance, bottle, ion or solid",
-        ),
-        S::InsteadOfTheBuiltIn => (
-            &[
-                BlockKind::Substance,
-                BlockKind::Bottle,
-                BlockKind::Ion,
-                BlockKind::Solid,
-                BlockKind::Danger,
-                BlockKind::Group,
-                BlockKind::Solution,
-            ],
-            "a substance, bottle, ion, solid, danger or group",
-        ),
+        S::Also(_) | S::InsteadOfTheBuiltIn => (DEFINING, "a substance, bottle, ion, solid, danger or group"),
         S::Cas(_) => (&[BlockKind::Substance, BlockKind::Bottle], "a substance"),
         S::Formula(_) => (&[BlockKind::Substance, BlockKind::Ion, BlockKind::Solid], "a substance, an ion or a solid"),
         S::MolarMass(_) => (&[BlockKind::Substance, BlockKind::Ion], "a substance or an ion"),
