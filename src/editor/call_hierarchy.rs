@@ -153,7 +153,7 @@ fn item(snapshot: &Snapshot, definition: &Definition) -> Option<HierarchyItem> {
         BlockKind::Solution => HierarchyKind::Solution,
         BlockKind::Bottle => HierarchyKind::Bottle,
         BlockKind::Substance => HierarchyKind::Substance,
-        BlockKind::Ion | BlockKind::Solid | BlockKind::Lab => return None,
+        BlockKind::Ion | BlockKind::Solid | BlockKind::Danger | BlockKind::Group | BlockKind::Lab => return None,
     };
     let (state, block) = locate(snapshot, definition)?;
     Some(HierarchyItem {

@@ -192,7 +192,7 @@ fn credit(
             Some(_) if owner.at == Some((place.file, place.block)) => Reason::OwnLines,
             Some(BlockKind::Solution | BlockKind::Bottle) => Reason::Stock(owner.name.clone()),
             Some(BlockKind::Lab) => Reason::Lab(owner.name.clone()),
-            Some(BlockKind::Substance | BlockKind::Ion | BlockKind::Solid) => Reason::Constant(owner.name.clone()),
+            Some(BlockKind::Substance | BlockKind::Ion | BlockKind::Solid | BlockKind::Danger | BlockKind::Group) => Reason::Constant(owner.name.clone()),
         };
         if !change.reasons.contains(&reason) {
             change.reasons.push(reason);

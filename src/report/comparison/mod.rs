@@ -385,6 +385,8 @@ fn edited(edit: &Edit, new: &Selection) -> EditedReport {
             BlockKind::Substance => "substance",
             BlockKind::Ion => "ion",
             BlockKind::Solid => "solid",
+            BlockKind::Danger => "danger",
+            BlockKind::Group => "group",
             BlockKind::Lab => "lab",
         }),
         block: edit.owner.name.clone(),
