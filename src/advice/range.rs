@@ -2,9 +2,24 @@
 
 use super::Case;
 use super::buffering::ph_is_wanted;
-use crate::chemistry::Warning;
+use crate::chemistry::{State, Warning};
 use crate::finding::{Code, Finding, Level};
 use crate::model::Property;
+
+/// What forms esters with borate that change the pH noticeably. Common practice, no source.
+const BORATE_PARTNERS: [&str; 8] = ["Tris", "Bis-tris", "triethanolamine", "glycerol", "mannitol", "sorbitol", "fructose", "glucose"];
+/// Below this concentration of either the ester is no matter, mol/L.
+const LEAST_ESTER: f64 = 0.01;
+
+/// The partner of an ester with borate, where there is enough of both.
+fn borate_ester(state: &State) -> Option<&'static str> {
+    let concentration = |name: &str| {
+        let is_it = |id| state.chemistry().component(id).is_some_and(|component| component.name == name);
+        state.totals_mol_per_L().filter(|(id, _)| is_it(*id)).map(|(_, concentration)| concentration).sum::<f64>()
+    };
+    let partners = BORATE_PARTNERS.into_iter().filter(|_| concentration("borate") >= LEAST_ESTER);
+    partners.map(|name| (name, concentration(name))).filter(|(_, much)| *much >= LEAST_ESTER).max_by(|a, b| a.1.total_cmp(&b.1)).map(|(name, _)| name)
+}
 
 /// Says why the values are doubtful; a hint where nothing is expected of them.
 pub(super) fn outside_model_range(case: &Case, findings: &mut Vec<Finding>) {
@@ -28,6 +43,16 @@ pub(super) fn outside_model_range(case: &Case, findings: &mut Vec<Finding>) {
                 return;
             }
         };
+        if let Some(partner) = borate_ester(state) {
+            let finding = Finding::new(
+                Code::OutsideModelRange,
+                at,
+                format!("Borate forms an ester with {partner}, for which no published constant is known to the library; the pH is lower than worked out."),
+            )
+            .help("Take the pH as an upper limit: Tris with borate reads about 0.3 lower (common practice, no source), polyols move it further.");
+            findings.push(if is_expected { finding } else { finding.at_level(Level::Hint) });
+            return;
+        }
         let Some(warning) = state.warnings.first() else { continue };
         let chemistry = state.chemistry();
         let species = |id| chemistry.species(id).map_or("", |species| species.name.as_str());

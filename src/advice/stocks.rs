@@ -143,11 +143,15 @@ pub(super) fn dilution_shift(case: &Case, findings: &mut Vec<Finding>) {
         return;
     }
     let Ok(diluted) = state.diluted_with((fold.value - 1.0) * outcome.volume_L) else { return };
-    push_dilution_shift(fold.at, fold.value, state.pH(), diluted.pH(), findings);
+    // At the strength of a concentrate the activity models part, and the finding says how far.
+    let doubt = state.alternative_pH().map_or(String::new(), |other| {
+        format!(" A second activity model gives {} for the concentrate, {:.2} apart.", format::ph(other), (other - state.pH()).abs())
+    });
+    push_dilution_shift(fold.at, fold.value, (state.pH(), diluted.pH()), &doubt, findings);
 }
 
 /// Says that the pH moves on dilution.
-fn push_dilution_shift(at: Anchor, fold: f64, before: f64, after: f64, findings: &mut Vec<Finding>) {
+fn push_dilution_shift(at: Anchor, fold: f64, (before, after): (f64, f64), doubt: &str, findings: &mut Vec<Finding>) {
     if (after - before).abs() <= DILUTION_SHIFT {
         return;
     }
@@ -156,7 +160,7 @@ fn push_dilution_shift(at: Anchor, fold: f64, before: f64, after: f64, findings:
             Code::DilutionShift,
             at,
             format!(
-                "Diluted {}-fold the pH is {}, {:.2} {} than the {} of the concentrate.",
+                "Diluted {}-fold the pH is {}, {:.2} {} than the {} of the concentrate.{doubt}",
                 format::plain(fold),
                 format::ph(after),
                 (after - before).abs(),

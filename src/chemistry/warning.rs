@@ -1,6 +1,6 @@
 //! What limits the trust in a state.
 
-use super::{ConstantId, SpeciesId, State};
+use super::{ConstantId, Species, SpeciesId, State};
 
 /// Ionic strength beyond which SIT with published coefficients is not to be trusted, mol/kg.
 pub const IONIC_STRENGTH_LIMIT_mol_per_kg: f64 = 3.0;
@@ -40,6 +40,18 @@ pub enum Warning {
     },
 }
 
+/// Share of one of its components that a species must hold for its constants to matter.
+const SHARE_THAT_MATTERS: f64 = 0.01;
+
+/// Whether a species holds a noticeable share of any of its components. Those of water alone always matter.
+fn matters(state: &State, species: &Species, molality_mol_per_kg: f64) -> bool {
+    species.parts.is_empty()
+        || species.parts.iter().any(|(component, count)| {
+            let total_mol = state.mixture.amounts_mol.get(component).copied().unwrap_or(0.0);
+            f64::from(*count) * molality_mol_per_kg * state.water_kg > SHARE_THAT_MATTERS * total_mol
+        })
+}
+
 /// The warnings of a state.
 pub(super) fn warnings(state: &State) -> Vec<Warning> {
     let mut warnings = Vec::new();
@@ -64,9 +76,11 @@ pub(super) fn warnings(state: &State) -> Vec<Warning> {
             }
         }
     }
-    let mut constants: Vec<ConstantId> = (state.system.species.iter())
-        .filter_map(|&id| chemistry.species(id))
-        .flat_map(|species| species.log_beta.iter().map(|&(_, constant)| constant))
+    let mut constants: Vec<ConstantId> = state
+        .species()
+        .filter_map(|(id, molality, _)| Some((chemistry.species(id)?, molality)))
+        .filter(|(species, molality)| matters(state, species, *molality))
+        .flat_map(|(species, _)| species.log_beta.iter().map(|&(_, constant)| constant))
         .collect();
     constants.sort();
     constants.dedup();

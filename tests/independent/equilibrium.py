@@ -46,7 +46,7 @@ class System:
         size = len(labels)
         self.epsilon = np.zeros((size, size))
         for i in range(size):
-            for j in range(i):
+            for j in range(i + 1):
                 value = library.interactions.get(frozenset((labels[i], labels[j])), 0.0)
                 self.epsilon[i, j] = self.epsilon[j, i] = value
 
