@@ -1,7 +1,8 @@
 //! Whether something holds the pH where a recipe sets or expects it.
 
 use super::Case;
-use crate::chemistry::ComponentId;
+use super::buffer_choice::{BufferChoice, Wanted, buffer_choices};
+use crate::chemistry::{ComponentId, State};
 use crate::evaluate::Outcome;
 use crate::finding::{Anchor, Code, Finding};
 use crate::model::{Action, GoalKind, NameKey, Property, Recipe};
@@ -47,9 +48,33 @@ pub(super) fn weak_buffering(case: &Case, findings: &mut Vec<Finding>) {
                     per(best)
                 ),
             )
-            .help("Choose a buffer whose pKa is nearer, more of it, or another pH."),
+            .help(better_choice(case, recipe, outcome, state)),
         );
         return;
+    }
+}
+
+/// How many better buffers are named.
+const NAMED: usize = 3;
+
+/// What would hold the pH better: other buffers by name, where some suit better than what is in the solution.
+fn better_choice(case: &Case, recipe: &Recipe, outcome: &Outcome, state: &State) -> String {
+    let present = outcome.mixture.amounts_mol.keys().copied().collect();
+    let ionic_strength = Some(state.ionic_strength_mol_per_kg);
+    let choices = Wanted::of(recipe, outcome.made_at_K, ionic_strength, present)
+        .map(|wanted| buffer_choices(case.context.constituents, &wanted))
+        .unwrap_or_default();
+    let is_used = |choice: &BufferChoice| outcome.mixture.amounts_mol.contains_key(&choice.component);
+    // Where what is used is among the nearest, only more of it helps.
+    let better: Vec<String> = (choices.iter())
+        .take_while(|choice| !is_used(choice))
+        .filter(|choice| choice.conflicts.is_empty())
+        .take(NAMED)
+        .map(|choice| format!("{} (pKa {} here)", choice.name, format::fixed(choice.pKa, 2)))
+        .collect();
+    match better.as_slice() {
+        [] => "Take more of the buffer, or another pH.".to_owned(),
+        better => format!("Nearer to this pH are {}; or take more of the buffer, or another pH.", better.join(", ")),
     }
 }
 

@@ -2,6 +2,7 @@
 
 mod accept;
 mod amounts;
+mod buffer_choice;
 mod buffering;
 mod dangers;
 mod definitions;
@@ -14,6 +15,8 @@ mod steps;
 mod stocks;
 mod temperature;
 mod unevaluated;
+
+pub use buffer_choice::{BufferChoice, Wanted, buffer_choices};
 
 use std::sync::Arc;
 

@@ -3,6 +3,7 @@
 mod items;
 mod names;
 mod parts;
+mod suited_buffers;
 
 use super::cursor::Cursor;
 use super::names::names;
@@ -313,6 +314,33 @@ mod tests {
         assert_eq!(inserted("solution A\n    1 g        potassium chl‸oride, purity 99 %", "potassium chloride"), "    1 g        potassium chloride, purity 99 %");
         // Found by its formula, written by its name.
         assert_eq!(inserted("solution A\n    1 g        NaCl‸", "sodium chloride"), "    1 g        sodium chloride");
+    }
+
+    #[test]
+    fn buffers_that_suit_the_pH_come_first_after_a_concentration() {
+        let recipe = |rest: &str| format!("solution A\n    made at    25 °C\n    50 mmol/L  ‸\n{rest}    q.s.       1 mol/L hydrochloric acid to pH 7.5\n    q.s.       water to 1 L\n");
+        let fixture = fixture(&recipe(""));
+        let items = completion(&fixture.snapshot, fixture.file, fixture.offset).items;
+        let place = |label: &str| match items.iter().position(|item| item.label == label) {
+            Some(place) => place,
+            None => panic!("no {label} among {:?}", items.iter().map(|item| &item.label).collect::<Vec<_>>()),
+        };
+        assert!(place("HEPES") == 0 && place("Tris") > place("MOPS"), "{} {}", place("Tris"), place("MOPS"));
+        let item = &items[place("HEPES")];
+        assert!(item.detail.contains("pKa 7.4"), "{}", item.detail);
+        assert!(item.documentation.contains("zwitterionic HEPES") && item.documentation.contains("per kelvin"), "{}", item.documentation);
+        // With calcium in the solution, phosphate is named with what speaks against it.
+        let calcium = described(&recipe("    2 mmol/L   calcium chloride dihydrate\n"), "disodium hydrogen phosphate");
+        assert!(calcium.contains("calcium"), "{calcium}");
+        // After a mass nothing is recommended.
+        assert!(!described("solution A\n    5 g        ‸\n    q.s.       water to pH 7.5\n", "HEPES").contains("per kelvin"));
+    }
+
+    /// What is said of an item.
+    fn described(text: &str, label: &str) -> String {
+        let fixture = fixture(text);
+        let items = completion(&fixture.snapshot, fixture.file, fixture.offset).items;
+        items.iter().find(|item| item.label == label).map(|item| item.documentation.clone()).unwrap_or_default()
     }
 
     #[test]

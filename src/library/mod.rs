@@ -1,11 +1,13 @@
 //! The built-in library: substances, ions and constants, written in the language itself, each with its source.
 
+mod buffers;
 mod hazards;
 #[cfg(test)]
 mod dangers;
 #[cfg(test)]
 mod solids;
 
+pub use buffers::{Buffer, buffers};
 pub use hazards::hazard_statement;
 
 use std::sync::{Arc, LazyLock};

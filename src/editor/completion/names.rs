@@ -3,6 +3,7 @@
 use std::collections::BTreeSet;
 
 use super::items::{Draft, Items};
+use super::suited_buffers::SuitedBuffers;
 use super::CompletionKind;
 use crate::editor::cursor::Cursor;
 use crate::editor::describe;
@@ -60,6 +61,7 @@ fn offer(items: &mut Items, cursor: &Cursor, wanted: Wanted, span: Span) {
         return constituents(items, cursor, span);
     }
     let scope = items.snapshot.scope(items.file);
+    let suited = if wanted.namespace == Namespace::Ingredient { SuitedBuffers::at(items, cursor) } else { None };
     let mut seen = BTreeSet::new();
     for (names, is_own) in [(&scope.own, true), (&scope.built_in, false)] {
         for (namespace, _, definitions) in names.all().filter(|(namespace, ..)| *namespace == wanted.namespace) {
@@ -72,7 +74,10 @@ fn offer(items: &mut Items, cursor: &Cursor, wanted: Wanted, span: Span) {
                     (_, true) => 20,
                     (_, false) => 30,
                 };
-                let draft = draft(items, definition, rank);
+                let mut draft = draft(items, definition, rank);
+                if let Some(suited) = &suited {
+                    suited.recommend(&mut draft, &definition.block);
+                }
                 items.add(span, draft);
             }
         }
