@@ -41,7 +41,7 @@ fn moved(path: &Utf8Path, renames: &[(Utf8PathBuf, Utf8PathBuf)]) -> Utf8PathBuf
 }
 
 /// The way from a folder to a file, with forward slashes; none between different disks.
-fn relative(folder: &Utf8Path, file: &Utf8Path) -> Option<String> {
+pub(super) fn relative(folder: &Utf8Path, file: &Utf8Path) -> Option<String> {
     let here: Vec<_> = folder.components().collect();
     let there: Vec<_> = file.components().collect();
     let shared = here.iter().zip(&there).take_while(|(one, other)| one == other).count();

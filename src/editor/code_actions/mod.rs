@@ -3,6 +3,7 @@
 mod amounts;
 mod expectations;
 mod forms;
+mod missing_use;
 mod pairs;
 mod scale;
 mod site;
@@ -63,6 +64,7 @@ pub fn code_actions(snapshot: &Snapshot, file: FileId, range: Span) -> Vec<CodeA
     let mut actions = Vec::new();
     for (index, located) in &touching {
         actions.extend(fixes(snapshot, file, *index, located));
+        actions.extend(missing_use::offers(snapshot, file, *index, located));
     }
     for (index, located) in &touching {
         actions.extend(accept(snapshot, file, *index, located));
@@ -192,6 +194,13 @@ mod tests {
         let values = crate::editor::values::Values::of(&fixture.snapshot, fixture.file, index).unwrap();
         let outcome = values.single().unwrap_or_else(|| panic!("no values:\n{text}\n{:#?}", fixture.snapshot.findings(fixture.file)));
         outcome.finished.as_ref().unwrap().pH()
+    }
+
+    #[test]
+    fn a_name_that_another_file_defines_is_made_known() {
+        let text = "use \"bench.prep\"\nsolution A\n    made at    25 °C\n    1 mL       salt st‸ock\n    q.s.       water to 1 L\n//- parts/stocks.prep\nsolution Salt stock\n    made at    25 °C\n    1 g        sodium chloride\n    q.s.       water to 1 L\n//- bench.prep\nlab Bench\n";
+        let mended = changed(text, "Use parts/stocks.prep, where Salt stock is defined");
+        assert!(mended.starts_with("use \"bench.prep\"\nuse \"parts/stocks.prep\"\nsolution A\n"), "{mended}");
     }
 
     #[test]
