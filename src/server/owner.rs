@@ -186,7 +186,8 @@ impl Owner {
                     }
                 }
                 change => {
-                    changed = true;
+                    // What the screen shows changes nothing of what is known.
+                    changed |= !matches!(change, Event::Settings(_));
                     if let Err(fault) = guarded(|| self.work_in(change)) {
                         log::write(format_args!("a change failed: {fault}"));
                     }
