@@ -39,9 +39,9 @@ class Conventions(unittest.TestCase):
     def test_the_hooks_are_a_manifest(self):
         self.succeeds(str(TOOLS / "pre-commit"), "validate-manifest", ".pre-commit-hooks.yaml")
         for hook in yaml.safe_load((ROOT / ".pre-commit-hooks.yaml").read_text()):
-            program, verb = hook["entry"].split()
-            self.assertEqual(program, "scruple")
-            self.succeeds(str(PROGRAM), verb, "--", "tests/fixtures/command/eluent.prep")
+            program, *arguments = hook["entry"].split()
+            self.assertEqual((program, arguments[-1]), ("scruple", "--"), "no file name is taken for an option")
+            self.succeeds(str(PROGRAM), *arguments, "tests/fixtures/command/eluent.prep")
 
     def test_the_action_fits_its_schema(self):
         self.succeeds(str(TOOLS / "check-jsonschema"), "--builtin-schema", "vendor.github-actions", str(ACTION))
