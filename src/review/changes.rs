@@ -236,8 +236,9 @@ fn change(
             (was, is) => change.shifts.push(Shift {
                 name: VALUES.to_owned(),
                 measure: Measure::Ph,
-                old: was.and_then(|outcome| Some(outcome.finished.as_ref().ok()?.pH())),
-                new: is.and_then(|outcome| Some(outcome.finished.as_ref().ok()?.pH())),
+                // Values without a state are values all the same.
+                old: was.map(|outcome| outcome.finished.as_ref().map_or(f64::NAN, |state| state.pH())),
+                new: is.map(|outcome| outcome.finished.as_ref().map_or(f64::NAN, |state| state.pH())),
                 shares: Vec::new(),
                 remainder: None,
             }),

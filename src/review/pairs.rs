@@ -1,7 +1,7 @@
 //! Which definition of the new state is which of the old one: by name in the same file, by document number, by name elsewhere,
 //! by what it says.
 
-use std::collections::BTreeMap;
+use std::collections::{BTreeMap, BTreeSet};
 
 use super::align::align;
 use super::values::Renamed;
@@ -12,6 +12,9 @@ use crate::workspace::Snapshot;
 
 /// Below this share of equal lines two definitions are not the same one under another name.
 const LEAST_EQUAL: f64 = 0.5;
+
+/// With more candidates than this, what has no name in common is not compared line by line.
+const MOST_COMPARED: usize = 40_000;
 
 /// A definition in both states, or in one of them: file and index of the block.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
@@ -100,17 +103,23 @@ fn take<K: Ord>(olds: &mut Vec<Single>, news: &mut Vec<Single>, pairs: &mut Vec<
         index
     };
     let of_old = index(olds);
+    let (mut gone, mut come) = (BTreeSet::new(), BTreeSet::new());
     for (key, at) in index(news) {
         if let ([new], Some([old])) = (at.as_slice(), of_old.get(&key).map(Vec::as_slice)) {
             pairs.push(Pair { new: Some(*new), old: Some(*old) });
-            olds.retain(|single| single.at != *old);
-            news.retain(|single| single.at != *new);
+            gone.insert(*old);
+            come.insert(*new);
         }
     }
+    olds.retain(|single| !gone.contains(&single.at));
+    news.retain(|single| !come.contains(&single.at));
 }
 
 /// Pairs those of one kind whose lines are mostly equal, the likest first.
 fn take_alike(olds: &mut Vec<Single>, news: &mut Vec<Single>, pairs: &mut Vec<Pair>) {
+    if olds.len().saturating_mul(news.len()) > MOST_COMPARED {
+        return;
+    }
     let mut likely = Vec::new();
     for new in news.iter() {
         for old in olds.iter().filter(|old| old.kind == new.kind) {

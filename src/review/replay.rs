@@ -39,7 +39,7 @@ pub(super) fn replay(
     if planned.len() > MOST_EDITS {
         return false;
     }
-    trial.read_only(&needed(planned, changes, old));
+    trial.read_only(&needed(planned, changes, old, new));
     let (texts, files) = additions(pairs, old, new);
     let whole: Vec<(FileId, Arc<SourceText>)> =
         files.iter().map(|(id, text)| (*id, Arc::new(SourceText::from(text.as_str())))).collect();
@@ -126,9 +126,9 @@ impl Bench {
     }
 }
 
-/// The files that matter to the replay: those of changed solutions and edited lines, what they use, and all that the chemistry
-/// of a root is made of.
-fn needed(planned: &[Planned], changes: &[Change], old: &Snapshot) -> BTreeSet<FileId> {
+/// The files that matter to the replay: those of changed solutions and edited lines, what they use or used, and all that the
+/// chemistry of a root is made of.
+fn needed(planned: &[Planned], changes: &[Change], old: &Snapshot, new: &Snapshot) -> BTreeSet<FileId> {
     let edited = planned.iter().filter_map(|planned| planned.edit.owner.at).map(|(file, _)| file);
     let changed = changes.iter().filter_map(|change| change.old.as_ref()).map(|place| place.file);
     let is_recipes_only = |file: &FileId| {
@@ -139,7 +139,7 @@ fn needed(planned: &[Planned], changes: &[Change], old: &Snapshot) -> BTreeSet<F
     let mut needed: BTreeSet<FileId> = edited.chain(changed).chain(chemistry).collect();
     let mut next: Vec<FileId> = needed.iter().copied().collect();
     while let Some(file) = next.pop() {
-        for used in old.files_used_by(file) {
+        for used in old.files_used_by(file).into_iter().chain(new.files_used_by(file)) {
             if needed.insert(used) {
                 next.push(used);
             }
