@@ -30,7 +30,15 @@ fn git_shows_values_once_the_driver_is_installed() {
     let patch = repository.git(&["format-patch", "--stdout", "-1"]);
     assert!(!patch.contains("#="), "{patch}");
     let shown = repository.prints(0, &["git", "textconv", "buffers.prep"]);
-    insta::assert_snapshot!("git_textconv", shown);
+    for line in [
+        "#= Wash buffer: takes what stands in other files; scruple compare works it out",
+        "#= Loading buffer: pH 8.10 at 25 °C, set to 8.10 before the rest",
+        "#= Loading buffer: takes 10.25 mL hydrochloric acid",
+        "#= Loading buffer: buffer capacity 11.64 mmol/L at 25 °C, as expected",
+        "#= Formate eluent: pH 3.81 at 25 °C",
+    ] {
+        assert!(shown.lines().any(|shown| shown == line), "{line}\n{shown}");
+    }
     let source: String = shown.lines().filter(|line| !line.starts_with("#=")).map(|line| format!("{line}\n")).collect();
     assert_eq!(source, repository.read("buffers.prep"));
 }
