@@ -4,7 +4,7 @@ use scruple::syntax::parse;
 use scruple::syntax::tree::*;
 
 /// Lines without fault, each with the beginning of its statement's debug form.
-const LAWFUL: [(&str, &str); 150] = [
+const LAWFUL: [(&str, &str); 155] = [
     ("language 1", "Language(Given"),
     ("use \"stocks/acids.prep\"", "Use(Given"),
     ("solution Tidal column eluent", "Header"),
@@ -150,6 +150,11 @@ const LAWFUL: [(&str, &str); 150] = [
     ("pKa 3404.71/T - 14.8435 + 0.032786 T ± 0.003, of carbonic acid, from 0 °C to 50 °C", "Pka"),
     ("pKa 2548.6/T - 20.03159 + 3.2172 ln T", "Pka"),
     ("log Ksp -8.48 ± 0.02, enthalpy -9.6 kJ/mol", "LogKsp"),
+    ("log KH -1.47 ± 0.01, of carbonic acid, enthalpy -19.4 kJ/mol", "LogKh"),
+    ("forms slowly", "Forms(Given(Slowly"),
+    ("forms at once", "Forms(Given(AtOnce"),
+    ("forms on freezing", "Forms(Given(OnFreezing"),
+    ("forms in passing", "Forms(Given(InPassing"),
     ("complex with 2 hydrogen, itself 3, named triborate(1-), log K 20.1 ± 0.1, enthalpy -30 kJ/mol", "ComplexWith"),
     ("complex with calcium, -1 hydrogen, log K -12.85, at ionic strength 0.1 mol/L, at 20 °C", "ComplexWith"),
     ("interaction with sodium, -0.15 kg/mol ± 0.06, of hydrogen phosphate, source NEA TDB", "InteractionWith"),

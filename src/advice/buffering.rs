@@ -26,7 +26,8 @@ pub(super) fn weak_buffering(case: &Case, findings: &mut Vec<Finding>) {
     let Some(recipe) = case.recipe() else { return };
     let Some(at) = ph_is_wanted(recipe) else { return };
     for outcome in case.outcomes() {
-        let Ok(state) = &outcome.finished else { continue };
+        // A gas that keeps its pressure holds the pH by itself.
+        let Some(state) = outcome.finished.as_ref().ok().filter(|_| outcome.above.is_none()) else { continue };
         let total = buffering_total(case, outcome);
         if total < LEAST_TOTAL {
             continue;

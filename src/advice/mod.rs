@@ -6,11 +6,15 @@ mod buffer_choice;
 mod buffering;
 mod dangers;
 mod definitions;
+mod dissolving;
 mod expectations;
 mod forms;
 mod free_ions;
+mod gases;
 mod range;
+mod saturated;
 mod setting;
+mod settling;
 mod steps;
 mod stocks;
 mod temperature;
@@ -102,6 +106,14 @@ pub const RULES: &[Rule] = &[
     dangers::keep_apart,
     dangers::hot_when_made_up,
     dangers::unmodelled_matters,
+    dissolving::does_not_dissolve,
+    settling::may_precipitate,
+    settling::precipitates_in_transit,
+    settling::crystallises_in_store,
+    settling::freeze_shift,
+    gases::open_to_the_air,
+    gases::not_at_gas_equilibrium,
+    gases::set_under_another_gas,
     range::outside_model_range,
     free_ions::steep_target,
     free_ions::metal_bound,

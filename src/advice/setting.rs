@@ -28,10 +28,15 @@ pub(super) fn moves_after_setting(case: &Case, findings: &mut Vec<Finding>) {
         if moved.abs() <= limit {
             continue;
         }
+        // Where the beaker was warm or cold when it was set, the temperature is part of the matter.
+        let apart = (finished.temperature_K - point.state.temperature_K).abs() > 0.5;
+        let place = |kelvin: f64| if apart { format!(" at {}", format::temperature(kelvin)) } else { String::new() };
         let words = format!(
-            "Set to {}, the pH is {} in the finished solution, {:.2} {}",
+            "Set to {}{}, the pH is {} in the finished solution{}, {:.2} {}",
             format::ph(point.state.pH()),
+            place(point.state.temperature_K),
             format::ph(finished.pH()),
+            place(finished.temperature_K),
             moved.abs(),
             if moved > 0.0 { "higher" } else { "lower" }
         );

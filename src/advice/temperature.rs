@@ -33,7 +33,8 @@ pub(super) fn temperature_shift(case: &Case, findings: &mut Vec<Finding>) {
         let Ok(made) = &outcome.finished else { continue };
         // A pH that was set for another temperature was set with the shift in mind.
         let for_use = outcome.set_points.iter().any(|point| point.elsewhere);
-        if for_use || ph_is_wanted(recipe).is_none() && buffering_total(case, outcome) < 0.001 {
+        // Under a gas the pH of use is another one than that of the closed beaker anyway.
+        if for_use || outcome.above.is_some() || ph_is_wanted(recipe).is_none() && buffering_total(case, outcome) < 0.001 {
             continue;
         }
         let worst = outcome

@@ -3,22 +3,15 @@
 use super::Case;
 use super::definitions::line_anchor;
 use crate::finding::{Code, Finding};
-use crate::model::Body;
-use crate::syntax::tree::{Content, Statement};
+use crate::model::{Body, Lookup, NameKey, Namespace};
+use crate::syntax::tree::{Content, Name, Slot, Statement};
 
 /// Says which statements have no effect on the values yet.
 pub(super) fn not_evaluated_yet(case: &Case, findings: &mut Vec<Finding>) {
     for (index, line) in case.block.lines.iter().enumerate() {
         let Content::Statement(statement) = &line.content else { continue };
         let what = match statement {
-            Statement::CoolTo(_) | Statement::WarmTo(_) => "A change of temperature on the way",
-            Statement::DriveOff(_) => "`drive off`",
-            Statement::Filter => "`filter`",
-            Statement::Wait(_) => "`wait`",
-            Statement::Open => "`open`",
-            Statement::Under(_) => "A gas above the liquid",
-            Statement::UsedAt(used) if used.under.is_some() => "A gas above the liquid",
-            Statement::Header(header) if header.kind == crate::syntax::tree::BlockKind::Solid => "A solid that can precipitate",
+            Statement::DriveOff(name) if !is_gas(case, name) => "Driving off what the library does not know as a gas",
             Statement::Balance(_) | Statement::Ware(_) | Statement::Meter(_) if matches!(case.block.body, Body::Lab(_)) => {
                 "Equipment"
             }
@@ -33,5 +26,14 @@ pub(super) fn not_evaluated_yet(case: &Case, findings: &mut Vec<Finding>) {
                     .help("The values of the solution do not depend on this line for now."),
             );
         }
+    }
+}
+
+/// Whether a name means a substance that is known as a gas.
+fn is_gas(case: &Case, name: &Slot<Name>) -> bool {
+    let Some(name) = name.given() else { return true };
+    match case.context.scope.find(Namespace::Ingredient, &NameKey::new(&name.text), &name.text) {
+        Lookup::One(definition) => case.context.constituents.phases.gas(&definition.key).is_some(),
+        _ => true,
     }
 }

@@ -4,6 +4,7 @@ use core::fmt;
 use std::sync::Arc;
 
 use super::constants::{Constant, ConstantId, ConstantValue};
+use super::phases::Phase;
 
 /// Handle of a component in a [`Chemistry`].
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
@@ -90,11 +91,12 @@ impl std::error::Error for Inconsistency {}
 
 /// The rows of a database and what can be looked up of them; shared, never changed once built.
 #[derive(Clone, Debug, Default, PartialEq)]
-struct Tables {
-    components: Vec<Component>,
+pub(super) struct Tables {
+    pub(super) components: Vec<Component>,
     base_species: Vec<SpeciesId>,
-    constants: Vec<Constant>,
+    pub(super) constants: Vec<Constant>,
     species: Vec<Species>,
+    pub(super) phases: Vec<Phase>,
     /// For each species its interactions, in order of the partner.
     interactions: Vec<Vec<(SpeciesId, Interaction)>>,
     molar_volume_cm3_per_mol: Vec<Option<f64>>,
@@ -195,6 +197,11 @@ impl Chemistry {
         self.tables.molar_conductivity_S_cm2_per_mol.get(id.0).copied().flatten()
     }
 
+    /// All rows.
+    pub(super) fn tables(&self) -> &Tables {
+        &self.tables
+    }
+
     /// Species made of water alone.
     pub(crate) fn species_of_water(&self) -> &[SpeciesId] {
         &self.tables.species_of_water
@@ -219,7 +226,7 @@ impl Chemistry {
 /// Collects the rows of a [`Chemistry`]. H⁺, OH⁻ and the ionisation of water are there from the start.
 #[derive(Clone, Debug)]
 pub struct ChemistryBuilder {
-    tables: Tables,
+    pub(super) tables: Tables,
     problem: Option<Inconsistency>,
 }
 
@@ -378,6 +385,11 @@ impl ChemistryBuilder {
         self.tables.base_species.get(id.0).copied()
     }
 
+    /// A species that was added.
+    pub fn species(&self, id: SpeciesId) -> Option<&Species> {
+        self.tables.species.get(id.0)
+    }
+
     /// The database, or the first thing that does not hang together.
     pub fn finish(self) -> Result<Chemistry, Inconsistency> {
         match self.problem {
@@ -386,7 +398,7 @@ impl ChemistryBuilder {
         }
     }
 
-    fn complain(&mut self, problem: Inconsistency) {
+    pub(super) fn complain(&mut self, problem: Inconsistency) {
         self.problem.get_or_insert(problem);
     }
 }

@@ -14,6 +14,9 @@ mod equilibrium;
 mod volume;
 mod warning;
 mod state;
+mod phases;
+mod solids;
+pub mod gases;
 mod trace;
 mod sensitivity;
 mod account;
@@ -32,6 +35,8 @@ pub use database::{Chemistry, ChemistryBuilder, Component, ComponentId, Inconsis
 pub use equilibrium::Limits;
 pub use failure::Failure;
 pub use mixture::Mixture;
+pub use phases::{Forming, Phase, PhaseId, PhaseKind};
+pub use solids::{Settled, phase_mass_kg};
 pub use sensitivity::Sensitivity;
 pub use state::{Settings, State};
 pub use volume::molar_volume_cm3_per_mol;

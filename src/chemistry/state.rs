@@ -2,7 +2,7 @@
 
 use super::{
     ActivityModel, Chemistry, ComponentId, Failure, Limits, Mixture, SpeciesId, Warning,
-    equilibrium::{self, Point, System},
+    equilibrium::{self, Point, System, reduction::Solution},
     sensitivity::Sensitivity,
     volume, warning, water,
 };
@@ -93,6 +93,22 @@ impl Chemistry {
 }
 
 impl State {
+    /// The state of the liquid that was found beside other phases, from what this one was made of (`mixture`, with every component named).
+    pub(super) fn of_solution(&self, mixture: &Mixture, solution: Solution, steps: usize) -> Result<Self, Failure> {
+        let mut liquid = mixture.clone();
+        liquid.water_kg = solution.water_mol * water::MOLAR_MASS_kg_per_mol;
+        liquid.hydrogen_mol = solution.hydrogen_mol;
+        liquid.amounts_mol = solution.amounts_mol.into_iter().filter(|(_, amount)| *amount > 0.0).collect();
+        let system = System::new(&self.chemistry, &liquid, self.temperature_K, self.settings.model)?;
+        // What is too scarce to count is left out of the closed liquid, and its species with it.
+        let point = if system.species == solution.system.species {
+            solution.point
+        } else {
+            equilibrium::solve(&system, self.settings.limits)?.0
+        };
+        Ok(Self::new(self.chemistry.clone(), liquid, self.temperature_K, self.settings, system, point, steps))
+    }
+
     fn new(
         chemistry: Chemistry,
         mixture: Mixture,

@@ -7,7 +7,8 @@ use super::terminal::Terminal;
 use super::{Ending, Trouble};
 use crate::model::NameKey;
 use crate::report::{
-    SHOW_SCHEMA, Sheet, Subject, reasons_sheet, sheet, solution_report, solution_report_with_reasons, solution_sheet,
+    SHOW_SCHEMA, Sheet, SolutionReport, Subject, reasons_sheet, settled_sheet, sheet, solution_report, solution_report_with_reasons, solution_sheet,
+    with_settled,
 };
 use crate::workspace::Origin;
 
@@ -26,6 +27,9 @@ pub(super) struct Show {
     /// How solutions are written
     #[arg(long, value_enum, default_value_t = Format::Text)]
     format: Format,
+    /// Also what is left when every solid that forms in practice has settled
+    #[arg(long)]
+    settled: bool,
     /// Print the JSON schema of `--format json`
     #[arg(long, exclusive = true)]
     schema: bool,
@@ -44,11 +48,16 @@ enum Format {
 impl Show {
     /// The sheets of a solution, in the order in which they are read.
     fn sheets(&self, subject: &Subject) -> Vec<Sheet> {
-        let mut sheets = vec![solution_sheet(subject)];
+        let mut sheets = vec![if self.settled { settled_sheet(subject) } else { solution_sheet(subject) }];
         if self.reasons {
             sheets.push(reasons_sheet(subject));
         }
         sheets
+    }
+
+    fn report(&self, subject: &Subject) -> SolutionReport {
+        let report = if self.reasons { solution_report_with_reasons(subject) } else { solution_report(subject) };
+        if self.settled { with_settled(subject, report) } else { report }
     }
 
     pub fn run(&self, terminal: &Terminal) -> Result<Ending, Trouble> {
@@ -67,8 +76,7 @@ impl Show {
         let subjects = all.iter().filter(|subject| wanted.is_empty() || wanted.iter().any(|key| subject.is_called(key)));
         match self.format {
             Format::Json => {
-                let report = if self.reasons { solution_report_with_reasons } else { solution_report };
-                terminal.print_json(&subjects.map(report).collect::<Vec<_>>())?;
+                terminal.print_json(&subjects.map(|subject| self.report(subject)).collect::<Vec<_>>())?;
             }
             Format::Text => {
                 let width = terminal.width();

@@ -122,7 +122,7 @@ pub fn names(statement: &Statement, kind: Option<BlockKind>) -> Vec<NameUse<'_>>
             found.extend(line.partner.given().map(|name| NameUse::new(name, Constituent)));
             found.extend(part_names(&line.parts));
         }
-        S::Pka(constant) | S::LogKsp(constant) | S::MolarConductivity(constant) | S::MolarVolume(constant) => {
+        S::Pka(constant) | S::LogKsp(constant) | S::LogKh(constant) | S::MolarConductivity(constant) | S::MolarVolume(constant) => {
             found.extend(part_names(&constant.parts));
         }
         _ => {}

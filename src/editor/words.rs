@@ -1,6 +1,6 @@
 //! The words of the language with one sentence each: the one table behind hovers over words and their completion.
 
-use crate::syntax::tree::{BlockKind, Statement};
+use crate::syntax::tree::{BlockKind, FormsHow, Slot, Statement};
 
 /// Where a word stands.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash)]
@@ -143,7 +143,12 @@ pub const WORDS: &[Word] = &[
     statement("keep away from", SUBSTANCE, "keep away from NAME, NAME", "What it must not meet."),
     statement("inert", SUBSTANCE, "inert", "It has mass and volume, and no effect on pH that the program works out."),
     statement("instead of the built-in", NAMED, "instead of the built-in", "Says that this definition is meant to replace the one of the built-in library."),
-    statement("log Ksp", SOLID, "log Ksp VALUE", "Solubility product."),
+    statement("log Ksp", SOLID, "log Ksp VALUE", "Solubility product of what the solid gives."),
+    statement("forms slowly", SOLID, "forms slowly", "It does not form while a solution is kept, so that no finding warns of it."),
+    statement("forms at once", SOLID, "forms at once", "It is certain to form where the solution is well saturated."),
+    statement("forms in passing", SOLID, "forms in passing", "It comes and goes on the way to a less soluble solid, so that the other one is judged."),
+    statement("forms on freezing", SOLID, "forms on freezing", "It crystallises first when a solution that holds its ions freezes, and moves the pH."),
+    statement("log KH", SUBSTANCE, "log KH VALUE[, of NAME][, enthalpy H]", "Henry's constant: activity of what it is in water over its partial pressure in bar."),
     statement("heat of solution", SUBSTANCE, "heat of solution VALUE [at STRENGTH]", "Enthalpy of dissolving a mole of it; negative where it warms."),
     statement("source", &[BlockKind::Bottle, BlockKind::Substance, BlockKind::Ion, BlockKind::Solid, BlockKind::Danger, BlockKind::Group], "source TEXT", "Where the facts come from."),
     // ── dangers and groups ──
@@ -306,6 +311,11 @@ pub fn of_statement(statement: &Statement) -> Option<&'static Word> {
         S::Holds(_) => "holds",
         S::Pka(_) => "pKa",
         S::LogKsp(_) => "log Ksp",
+        S::LogKh(_) => "log KH",
+        S::Forms(Slot::Given(FormsHow::AtOnce)) => "forms at once",
+        S::Forms(Slot::Given(FormsHow::OnFreezing)) => "forms on freezing",
+        S::Forms(Slot::Given(FormsHow::InPassing)) => "forms in passing",
+        S::Forms(_) => "forms slowly",
         S::ComplexWith(_) => "complex with",
         S::InteractionWith(_) => "interaction with",
         S::MolarConductivity(_) => "molar conductivity",

@@ -47,7 +47,10 @@ pub(super) fn with_likeness(recipe: &Recipe, context: &Context, depth: usize) ->
     merged.makes = recipe.makes.or(base.makes);
     merged.concentrate = recipe.concentrate.or(base.concentrate);
     merged.lab = recipe.lab.clone().or(base.lab);
-    merged.atmosphere = recipe.atmosphere.clone().or(base.atmosphere);
+    if recipe.atmosphere.is_none() {
+        merged.gas_in_use_only = base.gas_in_use_only;
+        merged.atmosphere = base.atmosphere.map(|gas| Stated { at: reference.at, ..gas });
+    }
     merged.use_within = recipe.use_within.or(base.use_within);
     merged.ready_after = recipe.ready_after.or(base.ready_after);
     if recipe.used_at.is_empty() {

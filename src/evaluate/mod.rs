@@ -1,5 +1,7 @@
 //! A solution's lines, in bench order, through the chemistry to a state; stocks out of stocks.
 
+mod above;
+mod beaker;
 mod bench;
 mod bottle;
 mod found;
@@ -10,17 +12,20 @@ mod outcome;
 mod plan;
 mod property;
 mod refusal;
+mod solubility;
 mod strength;
 mod verdicts;
 
 use std::sync::Arc;
 
+pub use above::{Above, carbon_dioxide};
 pub use goods::{Goods, Stock};
 pub use strength::table_density;
 pub use names::{Found, comes_in_strengths, is_plain_stock_of, listed, meaning, place_of, written_form};
 pub use outcome::*;
 pub use property::{PropertyValue, Question, as_formula_factor, free_mol, hardness_mol_per_L, key_element, property_value, total_mol};
 pub use refusal::Refusal;
+pub use solubility::{SolidForm, solid_form, solids_of};
 
 use crate::chemistry::Settings;
 use crate::finding::{Anchor, Code, Finding, Place};

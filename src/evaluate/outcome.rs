@@ -2,7 +2,8 @@
 
 use std::sync::Arc;
 
-use crate::chemistry::{Failure, Mixture, State};
+use super::Above;
+use crate::chemistry::{Failure, Mixture, PhaseId, Settled, State};
 use crate::finding::{Anchor, Finding};
 use crate::model::{DefinitionKey, Property, Recipe};
 use crate::units::Unit;
@@ -57,7 +58,15 @@ pub struct Outcome {
     pub set_points: Vec<SetPoint>,
     /// The beaker at each divider, in bench order.
     pub parts: Vec<PartOutcome>,
-    /// The state at each use temperature, in the order written.
+    /// What the beaker held after each line, in bench order.
+    pub stages: Vec<Stage>,
+    /// What was filtered or driven off, in bench order.
+    pub removed: Vec<Removed>,
+    /// The gas above the solution, where one is stated.
+    pub above: Option<Above>,
+    /// Where the solution drifts that is kept open: its state in equilibrium with the carbon dioxide of the air.
+    pub drift: Option<Result<Settled, Failure>>,
+    /// The state at each use temperature, in the order written, under the gas that is stated.
     pub uses: Vec<(f64, Result<State, Failure>)>,
     /// What became of the expectations, one for each temperature at which they must hold.
     pub verdicts: Vec<Verdict>,
@@ -67,6 +76,34 @@ pub struct Outcome {
     pub found: Option<(f64, f64)>,
     /// Whether the liquid is mostly made up by weighing or by volumes that do not add up to a mark.
     pub made_up: bool,
+}
+
+/// The beaker after a line.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Stage {
+    /// Index of the entry in the recipe.
+    pub entry: usize,
+    /// Its statement.
+    pub at: Anchor,
+    /// What the beaker held.
+    pub mixture: Mixture,
+    /// Its temperature, K.
+    pub temperature_K: f64,
+}
+
+/// What left the beaker at a line.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Removed {
+    /// Index of the entry in the recipe.
+    pub entry: usize,
+    /// Its statement.
+    pub at: Anchor,
+    /// The solid or gas.
+    pub phase: PhaseId,
+    /// Its amount, mol.
+    pub amount_mol: f64,
+    /// Its mass, kg.
+    pub mass_kg: f64,
 }
 
 /// A substance that the solution was made from.

@@ -23,6 +23,8 @@ pub enum PropertyValue {
     WrongUnit(String),
     /// A mass concentration that does not say of what: the property, and what could be written.
     AsWhat(String, &'static str),
+    /// The solution holds nothing of what the property is about.
+    Absent(String),
     /// A name is not known; the finding says more.
     Unknown(Refusal),
 }
@@ -50,6 +52,10 @@ impl PropertyValue {
             PropertyValue::Failed(failure) => {
                 Finding::new(Code::ExpectationWithoutValue, at, format!("This is not judged: {failure}."))
                     .help("Expect it where the solution can be worked out.")
+            }
+            PropertyValue::Absent(words) => {
+                Finding::new(Code::ExpectationWithoutValue, at, format!("There is no {words}: one of its ions is absent."))
+                    .help("Remove the line, or name a solid whose ions are there.")
             }
             PropertyValue::WrongUnit(words) => {
                 Finding::new(Code::UnitOfWrongKind, at, format!("This unit does not measure the {words}."))
@@ -134,7 +140,21 @@ pub fn property_value(state: &State, question: &Question, context: &Context) -> 
             let per_mole = as_formula.map(|formula| 2.0 * element_count(formula, &["Ca", "Mg"])).filter(|count| *count > 0.0);
             as_equivalents(2.0 * amount, 2.0, property, dimension, as_formula.zip(per_mole))?
         }
-        Property::SaturationIndex(_) => return Err(PropertyValue::NotEvaluated(property.words())),
+        Property::SaturationIndex(_) if dimension.is_some() => return Err(wrong()),
+        Property::SaturationIndex(reference) => {
+            let id = phase(reference, context).map_err(PropertyValue::Unknown)?;
+            state.saturation_index(id).ok_or_else(|| PropertyValue::Absent(property.words()))?
+        }
+    })
+}
+
+/// The solid that a reference means.
+fn phase(reference: &Reference, context: &Context) -> Result<crate::chemistry::PhaseId, Refusal> {
+    context.constituents.phases.solid(&reference.key).ok_or_else(|| {
+        Finding::new(Code::UnknownName, reference.at, format!("No solid is called {}.", reference.text))
+            .help("Correct the name, or define it in a `solid` block.")
+            .about(reference.key.as_str())
+            .into()
     })
 }
 

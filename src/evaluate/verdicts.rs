@@ -1,11 +1,14 @@
 //! Whether what a recipe expects holds: at the making, at every use temperature, and after dilution.
 
+use super::above::{above, carbon_dioxide};
 use super::bench::diluted;
 use super::goods::state_of;
 use super::property::{PropertyValue, Question, property_value};
 use super::{Context, Outcome, Refusal, Verdict};
 use crate::finding::{Code, Finding};
-use crate::model::{Expectation, Recipe};
+use crate::chemistry::gases::CARBON_DIOXIDE_OF_AIR_Pa;
+use crate::chemistry::{Failure, State};
+use crate::model::{Atmosphere, Expectation, Recipe};
 use crate::units::format;
 
 /// Limits are compared with the rounding of a double in mind.
@@ -18,11 +21,18 @@ pub(super) fn verdicts(
     context: &Context,
     findings: &mut Vec<Finding>,
 ) -> Result<Outcome, Refusal> {
-    outcome.uses = recipe
-        .used_at
-        .iter()
-        .map(|kelvin| (kelvin.value, state_of(&outcome.mixture, kelvin.value, context)))
-        .collect();
+    outcome.above = above(recipe, context, findings)?;
+    let mut used_at: Vec<f64> = recipe.used_at.iter().map(|kelvin| kelvin.value).collect();
+    if used_at.is_empty() && outcome.above.is_some() {
+        used_at.push(outcome.made_at_K);
+    }
+    outcome.uses = used_at.into_iter().map(|kelvin| (kelvin, in_use(recipe, &outcome, kelvin, context))).collect();
+    if recipe.atmosphere.as_ref().is_some_and(|gas| gas.value == Atmosphere::Open) {
+        outcome.drift = carbon_dioxide(context).map(|gas| {
+            let closed = outcome.finished.as_ref().map_err(Failure::clone)?;
+            closed.under(gas, CARBON_DIOXIDE_OF_AIR_Pa)
+        });
+    }
     for (index, expectation) in recipe.expectations.iter().enumerate() {
         let temperatures = match expectation.temperature {
             Some(kelvin) => vec![kelvin],
@@ -35,7 +45,7 @@ pub(super) fn verdicts(
         };
         let mut reported = false;
         for temperature_K in temperatures {
-            let value = match value_of(expectation, &outcome, temperature_K, context) {
+            let value = match value_of(expectation, recipe, &outcome, temperature_K, context) {
                 Ok(value) => value,
                 Err(refusals) => {
                     if !reported {
@@ -67,20 +77,33 @@ pub(super) fn verdicts(
     Ok(outcome)
 }
 
-/// The value of what is expected, or why there is none.
+/// The state at a temperature (K), under the gas that is stated there: everywhere, or in use only.
+fn in_use(recipe: &Recipe, outcome: &Outcome, temperature_K: f64, context: &Context) -> Result<State, Failure> {
+    let is_use = || recipe.used_at.is_empty() || recipe.used_at.iter().any(|kelvin| (kelvin.value - temperature_K).abs() < 1e-6);
+    match outcome.above.as_ref().filter(|gas| !gas.in_use_only || is_use()) {
+        Some(gas) => gas.over(&outcome.mixture, temperature_K, context),
+        None => state_of(&outcome.mixture, temperature_K, context),
+    }
+}
+
+/// The value of what is expected, or why there is none. A dilution is judged closed.
 fn value_of(
     expectation: &Expectation,
+    recipe: &Recipe,
     outcome: &Outcome,
     temperature_K: f64,
     context: &Context,
 ) -> Result<Option<f64>, Vec<Finding>> {
-    let mixture = match &expectation.diluted {
-        None => outcome.mixture.clone(),
-        Some(dilution) => diluted(&outcome.mixture, dilution.fold, dilution.with.as_ref(), outcome.made_at_K, context)
-            .map_err(Refusal::into_findings)?,
+    let state = match &expectation.diluted {
+        None => in_use(recipe, outcome, temperature_K, context),
+        Some(dilution) => {
+            let mixture = diluted(&outcome.mixture, dilution.fold, dilution.with.as_ref(), outcome.made_at_K, context)
+                .map_err(Refusal::into_findings)?;
+            state_of(&mixture, temperature_K, context)
+        }
     };
     // An expectation that is not judged must not look like one that holds.
-    let state = state_of(&mixture, temperature_K, context).map_err(|failure| {
+    let state = state.map_err(|failure| {
         let message = format!("This is not judged at {}: {failure}.", format::temperature(temperature_K));
         let finding = Finding::new(Code::ExpectationWithoutValue, expectation.at, message);
         vec![finding.help("Expect it where the solution can be worked out.")]

@@ -131,6 +131,16 @@ codes! {
     SaltShift, "salt-shift", Warning, "A pH that moves when salt is added.";
     SteepTarget, "steep-target", Warning, "An expected free ion that hangs on a hundredth of one line.";
     MetalBound, "metal-bound", Warning, "A metal that a chelator in excess binds.";
+    DoesNotDissolve, "does-not-dissolve", Warning, "A solid of which not all dissolves.";
+    MayPrecipitate, "may-precipitate", Warning, "A solution that is saturated with a solid that forms.";
+    PrecipitatesInTransit, "precipitates-in-transit", Warning, "A beaker that is saturated on the way to a clear solution.";
+    MetalHydrolyses, "metal-hydrolyses", Warning, "A metal that falls out as its hydroxide.";
+    CrystallisesInStore, "crystallises-in-store", Warning, "A solution that is clear where it is made and not where it is kept.";
+    FreezeShift, "freeze-shift", Warning, "A buffer whose pH moves on freezing.";
+    TakesUpCarbonDioxide, "takes-up-carbon-dioxide", Warning, "An open solution whose pH falls as it takes up carbon dioxide.";
+    GasEscapes, "gas-escapes", Warning, "An open solution that loses a gas.";
+    NotAtGasEquilibrium, "not-at-gas-equilibrium", Warning, "A hydrogen carbonate solution whose gas is not stated.";
+    SetUnderAnotherGas, "set-under-another-gas", Warning, "A pH that was set under another gas than that of use.";
     OutsideModelRange, "outside-model-range", Warning, "A solution beyond the range of the model.";
     NoSolutionFound, "no-solution-found", Error, "Equations for which the solver found no answer.";
     // ── What can hurt, react or not keep ──

@@ -3,7 +3,10 @@
 
 use std::collections::HashMap;
 
-use super::{Block, Body, Complex, Constant, ConstantValue, DefinitionKey, Interaction, Ion, NameKey, Reference, Substance, molar_mass};
+use super::phases::Phases;
+use super::{
+    Block, Body, Complex, Constant, ConstantValue, DefinitionKey, Interaction, Ion, NameKey, Reference, Solid, Substance, molar_mass,
+};
 use crate::chemistry::{self, Chemistry, ChemistryBuilder, Component, ComponentId, ConstantId, Mixture, Species, SpeciesId};
 use crate::finding::{Anchor, Code, Finding};
 use crate::syntax::formula::Formula;
@@ -44,6 +47,8 @@ pub struct Constituents {
     /// For each pair with an interaction coefficient, the smaller species first, the same.
     pub interactions: HashMap<(SpeciesId, SpeciesId), (DefinitionKey, Anchor, Option<String>)>,
     formulas: HashMap<NameKey, Formula>,
+    /// Its solids and gases.
+    pub phases: Phases,
     /// What is wrong with the definitions.
     pub findings: Vec<(DefinitionKey, Finding)>,
 }
@@ -55,6 +60,8 @@ impl Constituents {
         let mut ions: Vec<(DefinitionKey, &Block, &Ion)> = Vec::new();
         let mut index_of: HashMap<NameKey, usize> = HashMap::new();
         let mut molecules: Vec<(DefinitionKey, &Block, &Substance)> = Vec::new();
+        let mut solids: Vec<(DefinitionKey, &Block, &Solid)> = Vec::new();
+        let mut gases: Vec<(DefinitionKey, &Block, &Substance)> = Vec::new();
         for (key, block) in blocks {
             match &block.body {
                 Body::Ion(ion) => match index_of.get(&key.name).and_then(|index| ions.get_mut(*index)) {
@@ -64,11 +71,22 @@ impl Constituents {
                         ions.push((key, block, ion));
                     }
                 },
-                Body::Substance(substance) if dissolves_as_itself(substance) => molecules.push((key, block, substance)),
+                Body::Substance(substance) => {
+                    if substance.log_kh.is_some() {
+                        gases.push((key.clone(), block, substance));
+                    }
+                    if dissolves_as_itself(substance) {
+                        molecules.push((key, block, substance));
+                    }
+                }
+                Body::Solid(solid) => {
+                    solids.retain(|(old, ..)| old.name != key.name);
+                    solids.push((key, block, solid));
+                }
                 _ => {}
             }
         }
-        Builder::new().build(ions, molecules)
+        Builder::new().build(ions, molecules, &solids, &gases)
     }
 
     /// The constituent of this name.
@@ -151,15 +169,17 @@ fn dissolves_as_itself(substance: &Substance) -> bool {
 }
 
 /// What is known while the chemistry is being built.
-struct Builder {
-    chemistry: ChemistryBuilder,
-    by_name: HashMap<NameKey, Constituent>,
-    by_substance: HashMap<DefinitionKey, ComponentId>,
+pub(super) struct Builder {
+    pub(super) chemistry: ChemistryBuilder,
+    pub(super) by_name: HashMap<NameKey, Constituent>,
+    pub(super) by_substance: HashMap<DefinitionKey, ComponentId>,
+    pub(super) phases: Phases,
+    molar_masses: HashMap<ComponentId, f64>,
     defined_by: HashMap<ComponentId, DefinitionKey>,
     constants: HashMap<ConstantId, (DefinitionKey, Anchor, Option<String>)>,
     interactions: HashMap<(SpeciesId, SpeciesId), (DefinitionKey, Anchor, Option<String>)>,
     charges: HashMap<ComponentId, i32>,
-    findings: Vec<(DefinitionKey, Finding)>,
+    pub(super) findings: Vec<(DefinitionKey, Finding)>,
 }
 
 impl Builder {
@@ -188,6 +208,8 @@ impl Builder {
             chemistry,
             by_name,
             by_substance: HashMap::new(),
+            phases: Phases::default(),
+            molar_masses: HashMap::new(),
             defined_by: HashMap::new(),
             constants: HashMap::new(),
             interactions: HashMap::new(),
@@ -200,6 +222,8 @@ impl Builder {
         mut self,
         ions: Vec<(DefinitionKey, &Block, &Ion)>,
         molecules: Vec<(DefinitionKey, &Block, &Substance)>,
+        solids: &[(DefinitionKey, &Block, &Solid)],
+        gases: &[(DefinitionKey, &Block, &Substance)],
     ) -> Constituents {
         for (key, block, ion) in &ions {
             self.add_ion(key, block, ion);
@@ -234,6 +258,12 @@ impl Builder {
                 }
             }
         }
+        for (key, block, solid) in solids {
+            self.add_solid(key, block, solid);
+        }
+        for (key, block, substance) in gases {
+            self.add_gas(key, block, substance);
+        }
         let of_ions = ions.iter().filter_map(|(key, _, ion)| Some((key.name.clone(), ion.formula.as_ref()?.1.clone())));
         let of_molecules =
             molecules.iter().filter_map(|(key, _, one)| Some((key.name.clone(), one.formula.as_ref()?.1.clone())));
@@ -253,6 +283,7 @@ impl Builder {
             constants: self.constants,
             interactions: self.interactions,
             formulas,
+            phases: self.phases,
             findings: self.findings,
         }
     }
@@ -286,6 +317,7 @@ impl Builder {
         });
         self.defined_by.insert(component, key.clone());
         self.charges.insert(component, ion.charge);
+        self.molar_masses.insert(component, molar_mass);
         let base = Constituent {
             name: name.text.clone(),
             component: Some(component),
@@ -332,7 +364,7 @@ impl Builder {
 
     /// Adds a constant for the formation of a species. `sign` is −1 for an ionisation, whose enthalpy and heat capacity
     /// turn round with it.
-    fn add_constant(&mut self, key: &DefinitionKey, name: String, constant: &Constant, sign: f64) -> ConstantId {
+    pub(super) fn add_constant(&mut self, key: &DefinitionKey, name: String, constant: &Constant, sign: f64) -> ConstantId {
         let value = match constant.value {
             ConstantValue::Number { value, enthalpy, heat_capacity } => chemistry::ConstantValue::VantHoff {
                 log10_k: value,
@@ -412,6 +444,7 @@ impl Builder {
         let component =
             self.chemistry.add_component(Component { name: name.text.clone(), charge: 0, molar_mass_kg_per_mol: molar_mass });
         self.by_substance.insert(key.clone(), component);
+        self.molar_masses.insert(component, molar_mass);
         self.defined_by.insert(component, key.clone());
         let species = self.chemistry.base_species(component);
         let from_density = substance.density.map(|density| 1e6 * molar_mass / density);
@@ -428,6 +461,15 @@ impl Builder {
             molar_mass: Some(molar_mass),
             definition: Some(key.clone()),
         });
+    }
+
+    pub(super) fn charge_of(&self, component: ComponentId) -> i32 {
+        self.charges.get(&component).copied().unwrap_or(0)
+    }
+
+    /// kg/mol.
+    pub(super) fn molar_mass_of(&self, component: ComponentId) -> f64 {
+        self.molar_masses.get(&component).copied().unwrap_or(0.0)
     }
 
     fn species_of(&self, key: &DefinitionKey, of: Option<&Reference>) -> Option<SpeciesId> {
@@ -449,7 +491,7 @@ impl Builder {
     }
 }
 
-fn unknown_partner(partner: &Reference) -> Finding {
+pub(super) fn unknown_partner(partner: &Reference) -> Finding {
     Finding::new(Code::UnknownName, partner.at, format!("No ion or molecule in solution is called {}.", partner.text))
         .help("Define it in an `ion` block, or correct the name.")
 }

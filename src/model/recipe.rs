@@ -435,6 +435,8 @@ pub struct Recipe {
     pub ready_after: Option<Stated<f64>>,
     /// What stands above the liquid.
     pub atmosphere: Option<Stated<Atmosphere>>,
+    /// Whether it stands there in use only (`used at T under GAS`).
+    pub gas_in_use_only: bool,
     /// `makes`.
     pub makes: Option<Stated<Amount>>,
     /// `like NAME`.

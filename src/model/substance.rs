@@ -28,6 +28,8 @@ pub struct Substance {
     pub solubility: Vec<(super::Amount, Option<f64>)>,
     /// Heats of solution: J/mol, and the mass fraction that is reached; none for much water.
     pub heats_of_solution: Vec<(f64, Option<f64>)>,
+    /// Henry's constant (log₁₀): activity of what it is in water over its partial pressure in bar.
+    pub log_kh: Option<Constant>,
     /// GHS hazard statements by code.
     pub hazards: Vec<String>,
     /// What it must not meet.
@@ -144,6 +146,8 @@ pub struct Solid {
     pub gives: Vec<(f64, Reference)>,
     /// log Ksp.
     pub log_ksp: Option<Constant>,
+    /// Whether and how it forms.
+    pub forming: crate::chemistry::Forming,
     /// `instead of the built-in`.
     pub instead: bool,
     /// Where the facts come from.

@@ -12,7 +12,10 @@ pub fn assumptions(subject: &Subject, outcome: &Outcome) -> Vec<String> {
     if let Ok(state) = &outcome.finished {
         said.push(model(state));
     }
-    said.push("The solution is closed: no gas goes in or out, and what is in it has come to equilibrium.".to_owned());
+    said.push(match &outcome.above {
+        Some(above) => format!("The finished solution is closed; in use it is in equilibrium with {} above it, and no solid has formed.", above.name),
+        None => "The solution is closed: no gas goes in or out, what is in it has come to equilibrium, and no solid has formed.".to_owned(),
+    });
     for point in &outcome.set_points {
         if let Some(entry) = point.liquid_of.and_then(|entry| subject.recipe.entries.get(entry)) {
             let (set, made_up) = (subject.line(point.at), subject.line(entry.at));

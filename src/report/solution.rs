@@ -6,6 +6,7 @@ use super::cautions::{Hazard, hazards};
 use super::fingerprint::Fingerprints;
 use super::finding::{FindingReport, finding_report};
 use super::number::{celsius, number};
+use super::phases::{self, DriftReport, GasReport, RemovedReport, SaturationReport, SettledReport};
 use super::reasons::{ReasonsReport, reasons_report};
 use super::Subject;
 use crate::chemistry::{Failure, State};
@@ -43,8 +44,13 @@ pub struct SolutionReport {
     pub hardness_mol_per_L: Option<f64>,
     pub ingredients: Vec<IngredientReport>,
     pub set_points: Vec<SetPointReport>,
+    pub removed: Vec<RemovedReport>,
     pub found: Option<FoundReport>,
     pub at: Vec<StateReport>,
+    pub in_air: Option<DriftReport>,
+    pub saturation: Vec<SaturationReport>,
+    pub gases: Vec<GasReport>,
+    pub settled: Option<SettledReport>,
     pub species: Vec<SpeciesReport>,
     pub totals: Vec<TotalReport>,
     pub expectations: Vec<ExpectationReport>,
@@ -97,6 +103,7 @@ pub struct FoundReport {
 #[allow(missing_docs, reason = "each field is described in show.schema.json")]
 pub struct StateReport {
     pub temperature_C: Option<f64>,
+    pub gas: Option<GasReport>,
     pub pH: Option<f64>,
     pub ionic_strength_mol_per_L: Option<f64>,
     pub ionic_strength_mol_per_kg: Option<f64>,
@@ -193,6 +200,7 @@ pub fn solution_report(subject: &Subject) -> SolutionReport {
         hardness_mol_per_L: of_state(hardness_mol_per_L),
         ingredients: lines(outcome).map(|line| ingredient(subject, line)).collect(),
         set_points: outcome.into_iter().flat_map(|outcome| &outcome.set_points).map(|point| set_point(subject, point)).collect(),
+        removed: outcome.map(|outcome| phases::removed(subject, outcome)).unwrap_or_default(),
         found: outcome.and_then(|outcome| outcome.found).map(|(computed, found)| FoundReport {
             computed_mol_per_L: number(computed),
             found_mol_per_L: number(found),
@@ -200,8 +208,18 @@ pub fn solution_report(subject: &Subject) -> SolutionReport {
         at: outcome
             .into_iter()
             .flat_map(|outcome| &outcome.uses)
-            .map(|(temperature_K, state)| state_report(*temperature_K, state))
+            .map(|(temperature_K, state)| StateReport {
+                gas: outcome.and_then(|outcome| outcome.above.as_ref()).map(|above| GasReport {
+                    gas: above.name.clone(),
+                    partial_pressure_kPa: number(above.pressure_Pa(*temperature_K) / 1000.0),
+                }),
+                ..state_report(*temperature_K, state)
+            })
             .collect(),
+        in_air: outcome.and_then(phases::drift),
+        saturation: state.map(phases::saturation).unwrap_or_default(),
+        gases: state.map(phases::gases).unwrap_or_default(),
+        settled: None,
         species: state.map(species).unwrap_or_default(),
         totals: state.map(totals).unwrap_or_default(),
         expectations: expectations(subject, outcome),
@@ -218,6 +236,12 @@ fn findings(subject: &Subject) -> Vec<FindingReport> {
         finding_report(subject.selection, subject.file, located, Columns::Characters, fingerprint)
     };
     subject.findings().map(report).collect()
+}
+
+/// A report with what is left when every solid that forms has settled.
+pub fn with_settled(subject: &Subject, report: SolutionReport) -> SolutionReport {
+    let settled = subject.member.outcome.as_deref().and_then(phases::settled);
+    SolutionReport { settled, ..report }
 }
 
 fn lines(outcome: Option<&Outcome>) -> impl Iterator<Item = &LineOutcome> {
@@ -263,6 +287,7 @@ fn state_report(temperature_K: f64, state: &Result<State, Failure>) -> StateRepo
     let of_state = |value: fn(&State) -> f64| state.as_ref().ok().map(value).and_then(number);
     StateReport {
         temperature_C: celsius(temperature_K),
+        gas: None,
         pH: of_state(State::pH),
         ionic_strength_mol_per_L: of_state(State::ionic_strength_mol_per_L),
         ionic_strength_mol_per_kg: of_state(|state| state.ionic_strength_mol_per_kg),

@@ -4,6 +4,7 @@
 use super::assumptions::assumptions;
 use super::cautions::{cautions, hazards};
 use super::line_words::{amount_taken, name_taken};
+use super::phases;
 use super::sheet::{Column, Part, Sheet, Table};
 use super::solution::{conductivity, reason};
 use super::Subject;
@@ -27,6 +28,9 @@ pub fn solution_sheet(subject: &Subject) -> Sheet {
             sheet.section("Keeping", vec![Part::List(keeping(subject))]);
             sheet.section("Expected", vec![Part::Table(expected(subject, outcome))]);
             sheet.section("In the finished solution", vec![Part::Table(totals(outcome))]);
+            if let Ok(state) = &outcome.finished {
+                sheet.section("Solids and gases", phases::parts(state));
+            }
             sheet.section("Taken for granted", vec![Part::List(assumptions(subject, outcome))]);
             sheet.section("Cautions", cautions(&hazards(subject, outcome)));
         }
@@ -36,6 +40,15 @@ pub fn solution_sheet(subject: &Subject) -> Sheet {
         }
     }
     sheet.section("Findings", vec![Part::List(findings(subject))]);
+    sheet
+}
+
+/// The same with what settles out of the finished solution.
+pub fn settled_sheet(subject: &Subject) -> Sheet {
+    let mut sheet = solution_sheet(subject);
+    if let Some(outcome) = subject.member.outcome.as_deref() {
+        sheet.section("When all that forms has settled", phases::settled_parts(outcome));
+    }
     sheet
 }
 
@@ -75,11 +88,21 @@ pub(super) fn facts(subject: &Subject, outcome: &Outcome) -> Vec<(String, String
             let as_set = set.map(|set| format!(", set to {} before the rest", format::ph(set)));
             fact("pH", format!("{} at {made_at}{}", format::ph(state.pH()), as_set.unwrap_or_default()));
             for (temperature_K, state) in &outcome.uses {
-                let name = format!("pH at {}", format::temperature(*temperature_K));
+                let under = outcome.above.as_ref().map_or_else(String::new, |above| {
+                    format!(" under {} kPa {}", format::significant(above.pressure_Pa(*temperature_K) / 1000.0, 3), above.name)
+                });
+                let name = format!("pH at {}{under}", format::temperature(*temperature_K));
                 match state {
                     Ok(state) => fact(&name, format::ph(state.pH())),
                     Err(failure) => fact(&name, format!("not worked out: {failure}")),
                 }
+            }
+            if let Some(Ok(settled)) = &outcome.drift {
+                fact("pH in air", format::ph(settled.state.pH()));
+            }
+            for one in &outcome.removed {
+                let name = state.chemistry().phase(one.phase).map_or("", |phase| phase.name.as_str());
+                fact(&format!("taken out on line {}", subject.line(one.at)), format!("{} of {name}", format::mass(one.mass_kg, 3)));
             }
             state_facts(state, &mut fact);
         }

@@ -4,7 +4,7 @@ use serde::Serialize;
 use strsim::jaro_winkler;
 
 use super::number::{celsius, number};
-use crate::chemistry::REFERENCE_K;
+use crate::chemistry::{Forming, REFERENCE_K};
 use crate::library::{LibraryFile, built_in, hazard_statement};
 use crate::model::{Block, Body, Constant, ConstantValue, Definition, Ion, NameKey, Namespace, Reference, Solid, Substance, WATER_KG_PER_MOL};
 use crate::text::Columns;
@@ -60,6 +60,7 @@ pub struct SubstanceReport {
     pub gives: Vec<Counted>,
     pub water_mol_per_mol: Option<f64>,
     pub solubility: Vec<SolubilityReport>,
+    pub log10_KH: Option<ConstantReport>,
     pub aqueous: Vec<AqueousReport>,
     pub hazards: Vec<HazardReport>,
     pub keep_away_from: Vec<String>,
@@ -182,6 +183,7 @@ pub struct OfSpecies {
 pub struct SolidReport {
     pub formula: Option<String>,
     pub gives: Vec<Counted>,
+    pub forms: &'static str,
     pub log10_Ksp: Option<ConstantReport>,
 }
 
@@ -317,6 +319,7 @@ fn substance_report(file: &LibraryFile, block: &Block, substance: &Substance) ->
         inert: substance.inert,
         gives: counted(&substance.gives),
         water_mol_per_mol: water.map(|molecules| (molecules * 1e3).round() / 1e3 + 0.0),
+        log10_KH: substance.log_kh.as_ref().map(|constant| constant_report(constant, substance.source.as_ref())),
         solubility: substance
             .solubility
             .iter()
@@ -396,6 +399,13 @@ fn solid_report(solid: &Solid) -> SolidReport {
     SolidReport {
         formula: solid.formula.as_ref().map(|(written, _)| written.clone()),
         gives: counted(&solid.gives),
+        forms: match solid.forming {
+            Forming::Readily => "readily",
+            Forming::Slowly => "slowly",
+            Forming::AtOnce => "at once",
+            Forming::OnFreezing => "on freezing",
+            Forming::InPassing => "in passing",
+        },
         log10_Ksp: solid.log_ksp.as_ref().map(|constant| constant_report(constant, solid.source.as_ref())),
     }
 }

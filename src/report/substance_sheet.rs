@@ -47,6 +47,8 @@ fn substance_sheet(entry: &Entry<SubstanceReport>) -> Sheet {
             row.temperature_C.map(|celsius| format!("{} °C", format::plain(celsius))).unwrap_or_default(),
         ]
     });
+    let henry = facts.log10_KH.iter().map(|constant| constant_row("log KH".to_owned(), constant)).collect();
+    sheet.section("From the gas into water, per bar", vec![Part::Table(constants_table("constant", henry))]);
     let columns = vec![Column::numbers("strength"), Column::numbers("density"), Column::numbers("at")];
     sheet.section("Its solutions in water", vec![Part::Table(Table { columns, rows: density.collect() })]);
     if !facts.hazards.is_empty() {
@@ -150,6 +152,7 @@ fn solid_sheet(entry: &Entry<SolidReport>) -> Sheet {
     let mut rows = Vec::new();
     add(&mut rows, "formula", facts.formula.clone());
     add(&mut rows, "dissolves to", Some(counted(&facts.gives)));
+    add(&mut rows, "forms", Some(facts.forms.to_owned()));
     add(&mut rows, "source", entry.source.clone());
     sheet.section("", vec![Part::Facts(rows)]);
     let constants = facts.log10_Ksp.iter().map(|constant| constant_row("log Ksp".to_owned(), constant)).collect();

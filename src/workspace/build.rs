@@ -196,7 +196,9 @@ fn roots(
 fn adds_to_chemistry(block: &Block) -> bool {
     match &block.body {
         Body::Ion(_) | Body::Solid(_) => true,
-        Body::Substance(substance) => !substance.inert && substance.gives.is_empty() && substance.molar_mass.is_some(),
+        Body::Substance(substance) => {
+            substance.log_kh.is_some() || !substance.inert && substance.gives.is_empty() && substance.molar_mass.is_some()
+        }
         _ => false,
     }
 }

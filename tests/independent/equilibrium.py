@@ -87,6 +87,8 @@ class System:
             ln_gamma = 0.5 * ln_gamma + 0.5 * fresh_gamma
             ln_water, free_water = 0.5 * (ln_water + fresh_water), 0.5 * (free_water + fresh_free)
             if change < 1e-11:
+                self.log_activity = dict(zip(self.labels, (np.log(molality) + ln_gamma) / LN10))
+                self.log_water = ln_water / LN10
                 return -(free[-1] + ln_gamma[0]) / LN10, strength
         raise ArithmeticError("the activities did not settle")
 

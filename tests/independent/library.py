@@ -56,6 +56,8 @@ class Library:
     formulas: dict = field(default_factory=dict)  # ion -> formula without charge
     species: list = field(default_factory=list)
     interactions: dict = field(default_factory=dict)  # frozenset of two species -> epsilon, kg/mol
+    solids: dict = field(default_factory=dict)  # name -> (formula, gives, log Ksp, how it forms)
+    gases: dict = field(default_factory=dict)  # substance -> (formula, gives, log KH, form in water)
     substances: dict = field(default_factory=dict)  # any name, folded -> (name, formula, gives)
 
 
@@ -187,6 +189,38 @@ def read_substance(name, statements, library):
     library.substances[name.casefold()] = (name, formula, gives)
 
 
+def read_solid(name, statements, library):
+    formula, gives, constant, forms = None, [], None, ""
+    for statement in statements:
+        word, _, rest = statement.partition(" ")
+        rest = rest.strip()
+        if word == "formula":
+            formula = rest
+        elif word == "gives":
+            gives = [counted(part.strip()) for part in re.split(r",\s+", rest)]
+        elif word == "forms":
+            forms = rest
+        elif statement.startswith("log Ksp"):
+            fields = [part.strip() for part in re.split(r",\s+", statement[len("log Ksp"):].strip())]
+            constant = constant_of(fields[0], fields[1:], "")
+    library.solids[name] = (formula, gives, constant, forms)
+
+
+def read_gas(name, statements, library):
+    formula, gives = None, []
+    for statement in statements:
+        word, _, rest = statement.partition(" ")
+        if word == "formula":
+            formula = rest.strip()
+        elif word == "gives":
+            gives = [counted(part.strip()) for part in re.split(r",\s+", rest.strip())]
+    for statement in statements:
+        if statement.startswith("log KH"):
+            fields = [part.strip() for part in re.split(r",\s+", statement[len("log KH"):].strip())]
+            form = next((text[3:] for text in fields if text.startswith("of ")), None)
+            library.gases[name] = (formula, gives, constant_of(fields[0], fields[1:], ""), form)
+
+
 def load(folder=Path(__file__).parents[2] / "src" / "library" / "data"):
     """The whole built-in library."""
     library = Library()
@@ -196,4 +230,7 @@ def load(folder=Path(__file__).parents[2] / "src" / "library" / "data"):
                 read_ion(name, statements, library)
             elif kind == "substance":
                 read_substance(name, statements, library)
+                read_gas(name, statements, library)
+            elif kind == "solid":
+                read_solid(name, statements, library)
     return library

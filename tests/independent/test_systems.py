@@ -23,7 +23,12 @@ AGREEMENT = 1e-6
 
 def recipes():
     """Name, temperatures and molalities of each solution in systems.prep."""
-    for kind, name, statements in library.blocks(HERE / "systems.prep"):
+    return recipes_of(HERE / "systems.prep")
+
+
+def recipes_of(path):
+    """The same of any such file."""
+    for kind, name, statements in library.blocks(path):
         temperatures, molalities = [], []
         for statement in statements:
             if statement.startswith(("made at", "used at")):

@@ -2,7 +2,8 @@
 //!
 //! Unknowns are the logarithms of the component activities and of the molalities. A guess ([`guess`]) is brought near by a descent
 //! with frozen activity coefficients, which cannot fail where a solution exists ([`descent`]), and finished by Newton's method on the
-//! whole system ([`newton`]). Where that fails, the totals are raised step by step from a dilute start.
+//! whole system ([`newton`]). Where that fails, the totals are raised step by step from a dilute start. Phases beside the solution make a
+//! smaller system of it ([`reduction`]).
 
 #![allow(clippy::indexing_slicing, reason = "matrices are indexed by the sizes they were made with, never by input")]
 
@@ -11,6 +12,7 @@ pub(crate) mod descent;
 pub(crate) mod guess;
 pub(crate) mod linear_algebra;
 pub(crate) mod newton;
+pub(crate) mod reduction;
 pub(crate) mod system;
 
 use super::Failure;

@@ -79,6 +79,17 @@ impl System {
         temperature_K: f64,
         model: ActivityModel,
     ) -> Result<Self, Failure> {
+        Self::with_components(chemistry, mixture, temperature_K, model, &[])
+    }
+
+    /// The same with some components even where the mixture holds nothing of them.
+    pub fn with_components(
+        chemistry: &Chemistry,
+        mixture: &Mixture,
+        temperature_K: f64,
+        model: ActivityModel,
+        needed: &[ComponentId],
+    ) -> Result<Self, Failure> {
         let mut column_of = vec![0_usize; chemistry.component_count()];
         let mut components = Vec::with_capacity(mixture.amounts_mol.len());
         let mut totals_mol = Vec::with_capacity(mixture.amounts_mol.len() + 1);
@@ -91,7 +102,7 @@ impl System {
             if amount_mol < 0.0 {
                 return Err(Failure::NegativeAmount { component: component.name.clone(), amount_mol });
             }
-            if amount_mol > PRESENT_mol_per_kg * mixture.water_kg {
+            if amount_mol > PRESENT_mol_per_kg * mixture.water_kg || needed.contains(&id) {
                 components.push(id);
                 totals_mol.push(amount_mol);
                 column_of[id.0] = components.len();
@@ -171,6 +182,33 @@ impl System {
                 }
             }
         }
+    }
+
+    /// The system that is left of this one when `clear` has taken components out of each row of counts and its water, and told by how
+    /// much ln β grows; only the `kept` balances stay.
+    pub fn reduced(&self, kept: &[usize], clear: impl Fn(&mut [f64], &mut f64) -> f64) -> Self {
+        let mut rest = Self {
+            components: kept.iter().skip(1).filter_map(|column| self.components.get(column - 1).copied()).collect(),
+            parts: Vec::with_capacity(self.parts.len()),
+            ends: Vec::with_capacity(self.ends.len()),
+            counts: Matrix::zeros(self.species.len(), kept.len()),
+            ..self.clone()
+        };
+        let mut totals = self.totals_mol.clone();
+        clear(&mut totals, &mut rest.water_mol);
+        rest.totals_mol = kept.iter().map(|&column| totals[column]).collect();
+        for row in 0..self.species.len() {
+            let mut counts = self.counts.row(row).to_vec();
+            rest.ln_beta[row] += clear(&mut counts, &mut rest.water[row]);
+            for (at, &column) in kept.iter().enumerate() {
+                if counts[column] != 0.0 {
+                    rest.parts.push((at, counts[column]));
+                    rest.counts[(row, at)] = counts[column];
+                }
+            }
+            rest.ends.push(rest.parts.len());
+        }
+        rest
     }
 
     fn bounds(&self, row: usize) -> (usize, usize) {

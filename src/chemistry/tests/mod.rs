@@ -5,6 +5,7 @@ mod activity;
 mod buffering;
 mod conductivity;
 mod laboratory;
+mod phases;
 mod random;
 mod refusals;
 mod roots;

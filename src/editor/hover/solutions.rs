@@ -62,12 +62,19 @@ fn one(outcome: &Outcome, in_full: bool, page: &mut Page) {
     };
     let assumed = if outcome.made_at_half_width_K > 0.0 { " (middle of the room's range)" } else { "" };
     page.row("pH", format!("{} at {}{assumed}", shown_ph(state), format::temperature(outcome.made_at_K)));
-    for (kelvin, used) in outcome.uses.iter().filter(|(kelvin, _)| (kelvin - outcome.made_at_K).abs() > 0.05).take(4) {
+    let is_other = |kelvin: f64| outcome.above.is_some() || (kelvin - outcome.made_at_K).abs() > 0.05;
+    for (kelvin, used) in outcome.uses.iter().filter(|(kelvin, _)| is_other(*kelvin)).take(4) {
         let value = used.as_ref().map_or_else(|failure| format!("none: {failure}"), shown_ph);
-        page.row("", format!("{value} at {} (use)", format::temperature(*kelvin)));
+        let under = outcome.above.as_ref().map_or_else(String::new, |above| {
+            format!(", under {} kPa {}", format::significant(above.pressure_Pa(*kelvin) / 1000.0, 2), above.name)
+        });
+        page.row("", format!("{value} at {} (use{under})", format::temperature(*kelvin)));
     }
     for point in &outcome.set_points {
         page.row("", format!("{} as set, from {}", format::ph(point.state.pH()), format::ph(point.pH_before)));
+    }
+    if let Some(Ok(settled)) = &outcome.drift {
+        page.row("", format!("{} in air, to which it is open", shown_ph(&settled.state)));
     }
     page.row("ionic strength", format::concentration(state.ionic_strength_mol_per_L(), 3));
     page.row("buffer capacity", format!("{} per unit of pH", format::concentration(state.buffer_capacity_mol_per_L(), 3)));
@@ -86,12 +93,27 @@ fn one(outcome: &Outcome, in_full: bool, page: &mut Page) {
     page.row("volume", format!("{} at {}", format::volume(outcome.volume_L, 4), format::temperature(outcome.made_at_K)));
     if in_full {
         page.row("mass", format::mass(outcome.mass_kg, 4));
+        solids(state, page);
         if is_hardly_buffered(state) {
             page.sentence("Hardly buffered: the air and traces on the glass decide its pH.");
         }
         if !state.warnings.is_empty() {
             page.sentence("The activity model is at the end of its range here, or beyond it: take the values as a guide.");
         }
+    }
+}
+
+/// The solids that the solution is nearest to, most saturated first.
+fn solids(state: &State, page: &mut Page) {
+    let chemistry = state.chemistry();
+    let mut near: Vec<(f64, &str)> = (state.saturation_indices().into_iter())
+        .filter_map(|(id, index)| Some((index, chemistry.phase(id).filter(|phase| phase.holds_at(chemistry, state.temperature_K))?)))
+        .filter(|(index, _)| *index > -1.0)
+        .map(|(index, phase)| (index, phase.name.as_str()))
+        .collect();
+    near.sort_by(|one, other| other.0.total_cmp(&one.0));
+    for (index, name) in near.into_iter().take(4) {
+        page.row(format!("saturation index of {name}"), signed(index, 2));
     }
 }
 

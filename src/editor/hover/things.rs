@@ -4,6 +4,7 @@ use super::super::describe;
 use super::super::page::Page;
 use super::super::target::{find, locate, spelling};
 use super::solutions;
+use crate::chemistry::Forming;
 use crate::model::*;
 use crate::text::FileId;
 use crate::units::{Unit, format};
@@ -93,6 +94,7 @@ fn substance(snapshot: &Snapshot, from: FileId, definition: &Definition, substan
         let value = format::with_unit(amount.value, Some(amount.unit));
         kelvin.map_or(value.clone(), |kelvin| format!("{value} at {}", format::temperature(kelvin)))
     }));
+    page.row_if("log KH at 25 °C", substance.log_kh.as_ref().map(constant_text));
     if substance.inert {
         page.sentence("It has mass and volume; what it does to the pH is not worked out.");
     }
@@ -177,6 +179,13 @@ fn ion(ion: &Ion, called: &NameKey, page: &mut Page) {
 
 fn solid(solid: &Solid, page: &mut Page) {
     page.row_if("formula", solid.formula.as_ref().map(|(formula, _)| formula.clone()));
+    page.row_if("forms", match solid.forming {
+        Forming::Readily => None,
+        Forming::Slowly => Some("slowly: not while a solution is kept".to_owned()),
+        Forming::AtOnce => Some("at once".to_owned()),
+        Forming::OnFreezing => Some("first of all when the solution freezes".to_owned()),
+        Forming::InPassing => Some("in passing, on the way to a less soluble solid".to_owned()),
+    });
     page.row_if("log Ksp at 25 °C", solid.log_ksp.as_ref().map(constant_text));
     if let Some(source) = solid.log_ksp.as_ref().and_then(|constant| constant.source.as_ref()).or(solid.source.as_ref()) {
         page.sentence(format!("Source: {source}."));

@@ -65,7 +65,7 @@ impl Bench<'_, '_> {
             let mut y = Vec::with_capacity(scale.len());
             for one in sought {
                 let size = if one.aim == 0.0 { 1.0 } else { one.aim.abs() };
-                y.push((self.value(&run.beaker.mixture, one.goal, one.property, one.line.at)? - one.aim) / size);
+                y.push((self.value(&run.beaker.mixture, one.goal, one.property, one.line.at, self.temperature_K)? - one.aim) / size);
             }
             y.extend(surplus(&run.finals, finals, finals_scale));
             last = Some(run);
@@ -116,7 +116,7 @@ impl Bench<'_, '_> {
                 *slot = x;
             }
             let run = self.settle(unknowns, 0.01 * tolerance.max(100.0 * SETTLED))?;
-            Ok(self.value(&run.beaker.mixture, goal, property, line.at)? - aim)
+            Ok(self.value(&run.beaker.mixture, goal, property, line.at, self.temperature_K)? - aim)
         };
         let x = if is_pair {
             match guess.map(|guess| self.bracket(&mut miss, guess, 1.0)).transpose()?.flatten() {

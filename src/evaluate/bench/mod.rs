@@ -4,17 +4,19 @@ mod finished;
 mod outcome;
 mod ph;
 mod refusals;
+mod saturation;
 mod settle;
 mod volume;
 
 use std::cell::RefCell;
 
+use super::beaker::Beaker;
 use super::found;
-use super::goods::{Goods, state_of};
+use super::goods::state_of;
 use super::plan::{Dose, Finals, Planned, Work, plan};
-use super::property::{Question, property_value};
+use super::property::{PropertyValue, Question, property_value};
 use super::verdicts::verdicts;
-use super::{Context, Outcome, Refusal, SetPoint};
+use super::{Context, Outcome, Refusal, SetPoint, Stage};
 use crate::chemistry::targets::{TargetFailure, find_root};
 use crate::chemistry::{Mixture, State};
 use crate::finding::{Anchor, Code, Finding};
@@ -27,22 +29,6 @@ const PH_TOLERANCE: f64 = 1e-9;
 /// How much more than the beaker holds is tried before a target counts as out of reach.
 const MOST_TITRANT: f64 = 200.0;
 
-/// The beaker after some lines.
-#[derive(Clone, Debug, Default)]
-struct Beaker {
-    mixture: Mixture,
-    kilograms: f64,
-    water_kg: f64,
-}
-
-impl Beaker {
-    fn add(&mut self, goods: &Goods, mass_kg: f64) {
-        self.mixture.add(&goods.per_kg, mass_kg);
-        self.kilograms += mass_kg;
-        self.water_kg += mass_kg * goods.water_kg;
-    }
-}
-
 /// What a run through the lines gave.
 #[derive(Clone, Debug, Default)]
 struct Run {
@@ -52,6 +38,7 @@ struct Run {
     set_points: Vec<SetPoint>,
     parts: Vec<(usize, Beaker)>,
     finals: Vec<Finals>,
+    stages: Vec<Stage>,
 }
 
 /// Evaluates a solution.
@@ -117,7 +104,7 @@ impl Bench<'_, '_> {
                 }
                 Work::SetPh { titrants, .. } => has_liquid |= titrants.iter().any(|goods| goods.is_liquid),
                 Work::Adjust { goods, .. } | Work::ByEye { goods, .. } => has_liquid |= goods.is_liquid,
-                Work::Divider | Work::Instead { .. } => {}
+                Work::Divider | Work::Instead { .. } | Work::Saturate { .. } | Work::BringTo(_) | Work::DriveOff(_) | Work::Filter => {}
             }
         }
         if self.plan.is_empty() || !has_extent {
@@ -192,12 +179,35 @@ impl Bench<'_, '_> {
                     }
                     run.set_points.push(point);
                 }
+                Work::Saturate { goods, form } => {
+                    masses[0] = self.saturate(&beaker, goods, form, line)?;
+                    beaker.add(goods, masses[0]);
+                }
+                Work::BringTo(kelvin) => beaker.temperature_K = Some(*kelvin),
+                Work::DriveOff(gas) => {
+                    let temperature_K = self.temperature_of(&beaker);
+                    beaker
+                        .drive_off(*gas, line.entry, line.at, temperature_K, self.context)
+                        .map_err(|failure| Refusal::of_chemistry(line.at, &failure))?;
+                }
+                Work::Filter => {
+                    let temperature_K = self.temperature_of(&beaker);
+                    beaker
+                        .filter(line.entry, line.at, temperature_K, self.context)
+                        .map_err(|failure| Refusal::of_chemistry(line.at, &failure))?;
+                }
                 Work::Divider => {
                     run.finals.push(self.finals_of(&beaker, line.at)?);
                     run.parts.push((line.entry, beaker.clone()));
                 }
             }
             run.masses.push(masses);
+            run.stages.push(Stage {
+                entry: line.entry,
+                at: line.at,
+                mixture: beaker.mixture.clone(),
+                temperature_K: self.temperature_of(&beaker),
+            });
         }
         let at = self.plan.last().map_or(Anchor::default(), |line| line.at);
         run.finals.push(self.finals_of(&beaker, at)?);
@@ -206,17 +216,17 @@ impl Bench<'_, '_> {
     }
 
     fn finals_of(&self, beaker: &Beaker, at: Anchor) -> Result<Finals, Refusal> {
-        let litres = self.volume(&beaker.mixture, at)?;
+        let litres = self.volume(&beaker.mixture, self.temperature_K, at)?;
         Ok(Finals { litres, water_kg: beaker.water_kg, kilograms: beaker.kilograms })
     }
 
-    /// The value of a goal's property in a mixture, at the goal's own temperature and dilution.
-    fn value(&self, mixture: &Mixture, goal: &Goal, property: &Property, at: Anchor) -> Result<f64, Refusal> {
+    /// The value of a goal's property in a mixture, at the goal's own temperature (else this one, K) and dilution.
+    fn value(&self, mixture: &Mixture, goal: &Goal, property: &Property, at: Anchor, temperature_K: f64) -> Result<f64, Refusal> {
         let mut mixture = mixture.clone();
         if let Some(dilution) = &goal.diluted {
-            mixture = diluted(&mixture, dilution.fold, dilution.with.as_ref(), self.temperature_K, self.context)?;
+            mixture = diluted(&mixture, dilution.fold, dilution.with.as_ref(), temperature_K, self.context)?;
         }
-        let temperature_K = goal.temperature.map_or(self.temperature_K, |stated| stated.value);
+        let temperature_K = goal.temperature.map_or(temperature_K, |stated| stated.value);
         let state = state_of(&mixture, temperature_K, self.context).map_err(|failure| Refusal::of_chemistry(at, &failure))?;
         let unit = match &goal.kind {
             GoalKind::Property { unit, .. } => *unit,
@@ -228,11 +238,14 @@ impl Bench<'_, '_> {
             as_formula: goal.as_formula.as_ref(),
             says_temperature: goal.temperature.is_some(),
         };
-        property_value(&state, &question, self.context)
-            .map_err(|why| Refusal::from(why.finding(goal.at)))
+        match property_value(&state, &question, self.context) {
+            // Nothing of the solid's ions is there yet.
+            Err(PropertyValue::Absent(_)) => Ok(saturation::ABSENT),
+            value => value.map_err(|why| Refusal::from(why.finding(goal.at))),
+        }
     }
 
     fn state(&self, beaker: &Beaker, at: Anchor) -> Result<State, Refusal> {
-        state_of(&beaker.mixture, self.temperature_K, self.context).map_err(|failure| Refusal::of_chemistry(at, &failure))
+        state_of(&beaker.mixture, self.temperature_of(beaker), self.context).map_err(|failure| Refusal::of_chemistry(at, &failure))
     }
 }

@@ -8,7 +8,7 @@ use crate::evaluate::{LineOutcome, Outcome, PartOutcome, Role, Solute};
 impl Bench<'_, '_> {
     /// What the run amounts to.
     pub(super) fn outcome(&self, run: Run, made_at_half_width_K: f64) -> Outcome {
-        let Run { beaker, masses, set_points, parts, finals } = run;
+        let Run { beaker, masses, set_points, parts, finals, stages } = run;
         let finals_of_all = finals.last().copied().unwrap_or_default();
         let mut lines = Vec::new();
         let mut solutes: Vec<Solute> = Vec::new();
@@ -50,14 +50,16 @@ impl Bench<'_, '_> {
                     made_up = true;
                     take(line, goods, masses[0], Role::MakesUp);
                 }
-                Work::Adjust { goods, .. } | Work::ByEye { goods, .. } => take(line, goods, masses[0], Role::Adjusts),
+                Work::Adjust { goods, .. } | Work::ByEye { goods, .. } | Work::Saturate { goods, .. } => {
+                    take(line, goods, masses[0], Role::Adjusts);
+                }
                 Work::SetPh { titrants, .. } => {
                     let which = usize::from(masses[1] > 0.0);
                     if let (Some(titrant), Some(mass)) = (titrants.get(which), masses.get(which)) {
                         take(line, titrant, *mass, Role::Adjusts);
                     }
                 }
-                Work::Divider => {}
+                Work::Divider | Work::BringTo(_) | Work::DriveOff(_) | Work::Filter => {}
             }
         }
         Outcome {
@@ -80,6 +82,10 @@ impl Bench<'_, '_> {
                     volume_L: finals.litres,
                 })
                 .collect(),
+            stages,
+            removed: beaker.removed,
+            above: None,
+            drift: None,
             uses: Vec::new(),
             verdicts: Vec::new(),
             solutes,

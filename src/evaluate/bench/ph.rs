@@ -1,7 +1,8 @@
 //! The titrant and its amount that bring the beaker to a pH.
 
-use super::{Beaker, Bench, MOST_TITRANT, PH_TOLERANCE};
+use super::{Bench, MOST_TITRANT, PH_TOLERANCE};
 use crate::chemistry::State;
+use crate::evaluate::beaker::Beaker;
 use crate::evaluate::goods::{Goods, state_of};
 use crate::evaluate::plan::{Planned, Work};
 use crate::evaluate::{Refusal, SetPoint};
@@ -34,7 +35,8 @@ impl Bench<'_, '_> {
         if start.mixture.water_kg <= 0.0 {
             return Err(self.nothing_to_set(line));
         }
-        let before = self.value(&start.mixture, goal, &Property::Ph, line.at)?;
+        let temperature_K = self.temperature_of(beaker);
+        let before = self.value(&start.mixture, goal, &Property::Ph, line.at, temperature_K)?;
         let start_state = self.state(&start, line.at)?;
         let point = |state: State| SetPoint {
             entry: line.entry,
@@ -61,7 +63,7 @@ impl Bench<'_, '_> {
         };
         let miss = |mass: f64| -> Result<f64, Refusal> {
             let beaker = with(titrant, mass)?;
-            Ok(self.value(&beaker.mixture, goal, &Property::Ph, line.at)? - aim)
+            Ok(self.value(&beaker.mixture, goal, &Property::Ph, line.at, temperature_K)? - aim)
         };
         let near = self.taken.borrow().get(number).copied().flatten().filter(|(last, _)| *last == which);
         let (low, high) = match near.and_then(|(_, mass)| narrow(mass, &miss)) {

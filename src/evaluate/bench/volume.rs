@@ -1,8 +1,9 @@
 //! The volume of the beaker, what fills it up to a mark, and its dilution.
 
 use super::refusals::overfull;
-use super::{Beaker, Bench};
+use super::Bench;
 use crate::chemistry::{Mixture, water};
+use crate::evaluate::beaker::Beaker;
 use crate::evaluate::goods::{Goods, goods, volume_of};
 use crate::evaluate::names::ingredient;
 use crate::evaluate::plan::Extent;
@@ -12,8 +13,8 @@ use crate::model::{Qualifiers, Reference};
 use crate::units::format;
 
 impl Bench<'_, '_> {
-    pub(super) fn volume(&self, mixture: &Mixture, at: Anchor) -> Result<f64, Refusal> {
-        volume_of(mixture, self.temperature_K, self.context).ok_or_else(|| {
+    pub(super) fn volume(&self, mixture: &Mixture, temperature_K: f64, at: Anchor) -> Result<f64, Refusal> {
+        volume_of(mixture, temperature_K, self.context).ok_or_else(|| {
             Finding::new(Code::NoSolutionFound, at, "The volume of the beaker at this line cannot be worked out.")
                 .help("Check the amounts; a number may be off by a factor of a thousand.")
                 .into()
@@ -33,7 +34,8 @@ impl Bench<'_, '_> {
             }
             Extent::Litres(litres) => {
                 let density = goods.density.unwrap_or(1000.0) / 1000.0;
-                let before = if beaker.kilograms > 0.0 { self.volume(&beaker.mixture, at)? } else { 0.0 };
+                let temperature_K = self.temperature_of(beaker);
+                let before = if beaker.kilograms > 0.0 { self.volume(&beaker.mixture, temperature_K, at)? } else { 0.0 };
                 // A beaker at its mark within a ten-thousandth is full.
                 if before > litres * 1.0001 {
                     return Err(overfull(at, &format::volume(before, 4), &format::volume(litres, 4)));
@@ -41,7 +43,7 @@ impl Bench<'_, '_> {
                 closed_in((litres - before).max(0.0) * density, density, 1e-12 * litres, |mass| {
                     let mut filled = beaker.mixture.clone();
                     filled.add(&goods.per_kg, mass);
-                    Ok(litres - self.volume(&filled, at)?)
+                    Ok(litres - self.volume(&filled, temperature_K, at)?)
                 })
             }
         }

@@ -1,9 +1,11 @@
 //! `q.s.`: what is filled up to, set or adjusted.
 
 use super::{Extent, Planner, Work, pick};
+use crate::evaluate::goods::Goods;
 use crate::evaluate::names::{self, ingredient};
 use crate::evaluate::Refusal;
-use crate::finding::{Code, Finding, Level};
+use crate::evaluate::solubility::solid_form;
+use crate::finding::{Anchor, Code, Finding};
 use crate::model::{GoalKind, MakeUp, Property, Reference};
 use crate::units::Dimension;
 
@@ -59,14 +61,29 @@ impl Planner<'_, '_> {
                 .help("Add an estimate: `, about 5 mL`.")
                 .into()),
             },
-            GoalKind::Saturation => Err(Finding::new(
-                Code::NotEvaluatedYet,
-                goal.at,
-                "Saturation is read, but not worked out yet; the solution has no values.",
-            )
-            .at_level(Level::Hint)
-            .into()),
+            GoalKind::Saturation => self.saturate(&make_up.what, goods, goal.at),
         }
+    }
+
+    /// As much of a substance as dissolves.
+    fn saturate(&self, what: &Reference, goods: Goods, at: Anchor) -> Result<Work, Refusal> {
+        let found = ingredient(what, false, self.context)?;
+        let form = match (found.substance(), &goods.stock, &what.strength) {
+            (Some(substance), None, None) => solid_form(&found.definition.key, substance, self.context),
+            _ => None,
+        };
+        form.map(|form| Work::Saturate { goods, form: Box::new(form) }).ok_or_else(|| {
+            Finding::new(Code::TargetOutOfReach, at, format!("How much of {} dissolves is not known.", what.text))
+                .help("State an amount, or give its block a `solubility`, or a `solid` block with its `log Ksp`.")
+                .about(what.key.as_str())
+                .into()
+        })
+    }
+
+    /// The gas that leaves; none where nothing is known of it as a gas.
+    pub(super) fn drive_off(&self, reference: &Reference) -> Result<Option<Work>, Refusal> {
+        let found = ingredient(reference, false, self.context)?;
+        Ok(self.context.constituents.phases.gas(&found.definition.key).map(Work::DriveOff))
     }
 
     fn no_liquid(&self, reference: &Reference) -> Finding {

@@ -8,7 +8,9 @@ mod refusals;
 
 use super::goods::{Goods, goods};
 use super::names::ingredient;
+use super::solubility::SolidForm;
 use super::{Context, Refusal};
+use crate::chemistry::PhaseId;
 use crate::finding::{Anchor, Code, Finding};
 use crate::model::*;
 
@@ -85,6 +87,19 @@ pub enum Work {
         /// So much, kg.
         mass_kg: f64,
     },
+    /// As much as the beaker dissolves.
+    Saturate {
+        /// Of this.
+        goods: Goods,
+        /// When it is saturated with it.
+        form: Box<SolidForm>,
+    },
+    /// The beaker is brought to a temperature, K.
+    BringTo(f64),
+    /// A gas leaves the beaker.
+    DriveOff(PhaseId),
+    /// What has settled is filtered off.
+    Filter,
     /// What stands below is added later.
     Divider,
 }
@@ -179,12 +194,16 @@ pub fn plan(recipe: &Recipe, index: usize, temperature_K: f64, context: &Context
                 Work::Add { goods, dose } => Work::Instead { goods, dose },
                 other => other,
             }),
-            // A change of the beaker is not worked out yet, and the advice says so.
-            Action::BringTo(_)
-            | Action::DriveOff(_)
-            | Action::Filter
-            | Action::Wait(_)
-            | Action::Found { .. } => continue,
+            Action::BringTo(kelvin) => Ok(Work::BringTo(*kelvin)),
+            Action::DriveOff(reference) => match planner.drive_off(reference) {
+                Ok(Some(work)) => Ok(work),
+                // Nothing is known of it as a gas, and the advice says so.
+                Ok(None) => continue,
+                Err(refusal) => Err(refusal),
+            },
+            Action::Filter => Ok(Work::Filter),
+            // What is worked out is what time brings about.
+            Action::Wait(_) | Action::Found { .. } => continue,
         };
         match work {
             Ok(work) => planned.push(Planned { entry: number, at: entry.at, part, work }),

@@ -4,10 +4,11 @@ use std::sync::Arc;
 
 use super::quantities::{amount, base_value};
 use super::{Lowering, defined_name, reference, statement_span, statements};
+use crate::chemistry::Forming;
 use crate::finding::{Anchor, Code, Finding};
 use crate::model::*;
 use crate::syntax::formula::{self, Formula};
-use crate::syntax::tree::{self, ConstantPartKind, Line, Slot, Statement, Value};
+use crate::syntax::tree::{self, ConstantPartKind, FormsHow, Line, Slot, Statement, Value};
 use crate::units::Dimension;
 
 /// Density tables of aqueous solutions hold at 20 °C unless a row says otherwise.
@@ -16,7 +17,7 @@ const TABLE_TEMPERATURE_K: f64 = 293.15;
 impl Lowering {
     pub(super) fn substance(&mut self, lines: &[Arc<Line>]) -> Substance {
         let mut substance = Substance::default();
-        for (index, _, statement) in statements(lines) {
+        for (index, line, statement) in statements(lines) {
             match statement {
                 Statement::Also(names) => self.also.extend(names.iter().map(defined_name)),
                 Statement::Formula(slot) => substance.formula = self.formula(index, slot),
@@ -54,6 +55,10 @@ impl Lowering {
                 }
                 Statement::KeepAwayFrom(names) => {
                     substance.keep_away_from.extend(names.iter().map(|name| reference(index, name)));
+                }
+                Statement::LogKh(given) => {
+                    let at = Anchor::new(index, statement_span(line));
+                    substance.log_kh = constant(index, at, given, None);
                 }
                 Statement::Inert => substance.inert = true,
                 Statement::InsteadOfTheBuiltIn => substance.instead = true,
@@ -106,6 +111,15 @@ impl Lowering {
                 Statement::Formula(slot) => solid.formula = self.formula(index, slot),
                 Statement::Gives(given) => solid.gives = gives(index, given),
                 Statement::LogKsp(given) => solid.log_ksp = constant(index, at, given, None),
+                Statement::Forms(slot) => {
+                    solid.forming = match slot.given() {
+                        Some(FormsHow::Slowly) => Forming::Slowly,
+                        Some(FormsHow::AtOnce) => Forming::AtOnce,
+                        Some(FormsHow::OnFreezing) => Forming::OnFreezing,
+                        Some(FormsHow::InPassing) => Forming::InPassing,
+                        None => Forming::Readily,
+                    };
+                }
                 Statement::InsteadOfTheBuiltIn => solid.instead = true,
                 Statement::Source(slot) => solid.source = slot.given().map(|text| text.text.clone()),
                 _ => {}

@@ -44,13 +44,13 @@ pub(super) fn home_of(statement: &Statement, role: &BlockRole) -> Option<&'stati
         S::MolarMass(_) => (&[BlockKind::Substance, BlockKind::Ion], "a substance or an ion"),
         S::Gives(_) => (&[BlockKind::Substance, BlockKind::Solid], "a substance or a solid"),
         S::MolarVolume(_) => (&[BlockKind::Ion, BlockKind::Substance], "an ion or a substance"),
-        S::Form(_) | S::Aqueous(_) | S::Solubility(_) | S::KeepAwayFrom(_) | S::HeatOfSolution(_) | S::Inert => {
+        S::Form(_) | S::Aqueous(_) | S::Solubility(_) | S::KeepAwayFrom(_) | S::HeatOfSolution(_) | S::Inert | S::LogKh(_) => {
             (&[BlockKind::Substance], "a substance")
         }
         S::Charge(_) | S::Pka(_) | S::ComplexWith(_) | S::InteractionWith(_) | S::MolarConductivity(_) => {
             (&[BlockKind::Ion], "an ion")
         }
-        S::LogKsp(_) => (&[BlockKind::Solid], "a solid"),
+        S::LogKsp(_) | S::Forms(_) => (&[BlockKind::Solid], "a solid"),
         S::With(_) | S::While(_) | S::EvenInPassing | S::Keeps(_) | S::Raises(_) | S::Because(_) | S::Advice(_) => {
             (&[BlockKind::Danger], "a danger")
         }
@@ -163,10 +163,10 @@ impl Lowering {
                 Some(seconds) => recipe.use_within = Some(seconds),
                 None => return false,
             },
-            Statement::Sealed => self.atmosphere(recipe, Stated { value: Atmosphere::Sealed, at }),
-            Statement::Open => self.atmosphere(recipe, Stated { value: Atmosphere::Open, at }),
+            Statement::Sealed => self.atmosphere(recipe, Stated { value: Atmosphere::Sealed, at }, false),
+            Statement::Open => self.atmosphere(recipe, Stated { value: Atmosphere::Open, at }, false),
             Statement::Under(slot) => match slot.given().and_then(|gas| atmosphere(index, gas)) {
-                Some(value) => self.atmosphere(recipe, Stated { value, at }),
+                Some(value) => self.atmosphere(recipe, Stated { value, at }, false),
                 None => return false,
             },
             Statement::In(name) => match name.given() {
@@ -252,7 +252,8 @@ impl Lowering {
         }
     }
 
-    fn atmosphere(&mut self, recipe: &mut Recipe, new: Stated<Atmosphere>) {
+    fn atmosphere(&mut self, recipe: &mut Recipe, new: Stated<Atmosphere>, in_use_only: bool) {
+        recipe.gas_in_use_only = in_use_only && (recipe.atmosphere.is_none() || recipe.gas_in_use_only);
         match &recipe.atmosphere {
             Some(old) if old.value != new.value => {
                 recipe.sound = false;
@@ -302,7 +303,7 @@ impl Lowering {
             None => true,
             Some(slot) => match slot.given().and_then(|gas| atmosphere(index, gas)) {
                 Some(value) => {
-                    self.atmosphere(recipe, Stated { value, at });
+                    self.atmosphere(recipe, Stated { value, at }, true);
                     true
                 }
                 None => false,

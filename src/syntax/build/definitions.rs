@@ -33,6 +33,20 @@ impl<'t> Builder<'t> {
         }
     }
 
+    /// `forms slowly`.
+    pub(super) fn forms(&mut self, node: &Node<'t>) -> Statement {
+        let Some(how) = child(node, Rule::forms_how) else {
+            return Statement::Forms(self.absent(span(node).end, Expected::Other));
+        };
+        let words = self.of(span(&how)).to_lowercase();
+        Statement::Forms(Slot::Given(match words.split(is_space).next() {
+            Some("at") => FormsHow::AtOnce,
+            Some("on") => FormsHow::OnFreezing,
+            Some("in") => FormsHow::InPassing,
+            _ => FormsHow::Slowly,
+        }))
+    }
+
     pub(super) fn use_path(&mut self, node: &Node<'t>) -> Statement {
         Statement::Use(match child(node, Rule::path) {
             Some(path) => self.path(&path),

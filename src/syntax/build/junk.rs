@@ -6,14 +6,14 @@ use crate::syntax::spelling::nearest;
 use crate::units::Unit;
 
 /// Every word that can open a line, in its written form.
-pub(in crate::syntax) const FIRST_WORDS: [&str; 70] = [
+pub(in crate::syntax) const FIRST_WORDS: [&str; 75] = [
     "solution", "bottle", "substance", "ion", "solid", "danger", "group", "lab", "use", "language", "about", "q.s.", "all", "or", "makes",
     "cool to", "warm to", "drive off", "filter", "wait", "made at", "used at", "stored at", "stored below", "ready after",
     "use within", "sealed", "open", "under", "in", "like", "without", "concentrate", "before use", "after autoclaving",
     "expect", "standardise against", "found", "accept", "step", "record", "note", "document", "source", "supplier",
     "expires", "instead of the built-in", "also", "CAS", "formula", "charge", "molar mass", "molar conductivity",
     "molar volume", "gives", "form", "density", "aqueous", "solubility", "activity", "hazard", "keep away from", "inert",
-    "pKa", "log Ksp", "complex with", "interaction with", "room", "balance", "flask",
+    "pKa", "log Ksp", "log KH", "forms slowly", "forms at once", "forms on freezing", "forms in passing", "complex with", "interaction with", "room", "balance", "flask",
 ];
 
 /// More words that can open a line: ware, meters, dangers.

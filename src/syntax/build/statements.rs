@@ -77,6 +77,8 @@ impl<'t> Builder<'t> {
             Rule::inert => Statement::Inert,
             Rule::pka => Statement::Pka(self.constant(&node, LOGARITHM)),
             Rule::log_ksp => Statement::LogKsp(self.constant(&node, LOGARITHM)),
+            Rule::log_kh => Statement::LogKh(self.constant(&node, LOGARITHM)),
+            Rule::forms => self.forms(&node),
             Rule::complex => self.complex(&node),
             Rule::interaction => self.interaction(&node),
             Rule::molar_conductivity => Statement::MolarConductivity(self.constant(&node, MOLAR_CONDUCTIVITY)),

@@ -4,7 +4,7 @@ use super::*;
 use crate::syntax::characters::{deceptive_letters, is_invisible};
 
 /// Words whose written form has capitals.
-const CAPITALS: [&str; 7] = ["pH", "CAS", "pKa", "K", "Ksp", "A", "T"];
+const CAPITALS: [&str; 8] = ["pH", "CAS", "pKa", "K", "Ksp", "KH", "A", "T"];
 
 impl Builder<'_> {
     /// Covers what no token covers yet, and asks for the written form of every keyword in another letter case.

@@ -77,6 +77,8 @@ pub enum Statement {
     Inert,
     Pka(Constant),
     LogKsp(Constant),
+    LogKh(Constant),
+    Forms(Slot<FormsHow>),
     ComplexWith(Complex),
     InteractionWith(Partnered),
     MolarConductivity(Constant),
@@ -109,6 +111,16 @@ pub enum BlockKind {
     Danger,
     Group,
     Lab,
+}
+
+/// How a solid forms, after `forms`.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+#[allow(missing_docs, reason = "named after the words")]
+pub enum FormsHow {
+    Slowly,
+    AtOnce,
+    OnFreezing,
+    InPassing,
 }
 
 /// `solution NAME` and its like.
