@@ -267,20 +267,22 @@ fn is_made_up_to_a_mark(recipe: &Recipe) -> bool {
 /// Something kept longer than it lasts.
 fn does_not_keep(case: &Case, recipe: &Recipe, outcome: &Outcome, danger: &Danger, present: &[Present], ph: Option<f64>) -> Option<Finding> {
     let line = line_of(case, outcome, present.first()?.member)?;
-    let line_of_entry = |line: usize| recipe.entries.iter().filter(|entry| matches!(entry.action, Action::Divider(_)) && entry.at.line < line).count();
-    for storage in &recipe.storage {
-        // What is added after a divider is not kept with what stands above it.
-        if line_of_entry(line.at.line) > line_of_entry(storage.at.line) {
+    let dividers_above = |line: usize| recipe.entries.iter().filter(|entry| matches!(entry.action, Action::Divider(_)) && entry.at.line < line).count();
+    let stored = recipe.storage.iter().filter_map(|storage| Some((storage.duration?, storage.high, storage.at)));
+    let place_K = recipe.storage.first().map_or(outcome.made_at_K, |storage| storage.high);
+    let within = recipe.use_within.map(|within| (within.value, place_K, within.at));
+    for (kept, at_K, at) in stored.chain(within) {
+        // What is added after a divider is not kept with what stands above it; and what is frozen keeps: reactions in ice do
+        // not follow the rule for liquids.
+        if dividers_above(line.at.line) > dividers_above(at.line) || at_K <= FROZEN_K {
             continue;
         }
-        // What is frozen keeps: reactions in ice do not follow the rule for liquids.
-        let Some(kept) = storage.duration.filter(|_| storage.high > FROZEN_K) else { continue };
         // The row that was measured nearest to the storage temperature, carried there.
         let nearest = danger.keeps.iter().min_by(|one, other| {
-            let off = |row: &(f64, Option<f64>)| row.1.map_or(0.0, |kelvin| (kelvin - storage.high).abs());
+            let off = |row: &(f64, Option<f64>)| row.1.map_or(0.0, |kelvin| (kelvin - at_K).abs());
             off(one).total_cmp(&off(other))
         })?;
-        let warmer = nearest.1.map_or(0.0, |kelvin| storage.high - kelvin);
+        let warmer = nearest.1.map_or(0.0, |kelvin| at_K - kelvin);
         let life = nearest.0 * libm::exp2(-warmer / KELVIN_THAT_DOUBLE);
         if kept <= life * 1.05 {
             continue;
@@ -290,12 +292,12 @@ fn does_not_keep(case: &Case, recipe: &Recipe, outcome: &Outcome, danger: &Dange
             "{} lasts about {} at {}{at_ph}, and this is kept {}: {}.",
             capital(&line.name),
             super::stocks::duration(life),
-            format::temperature(storage.high),
+            format::temperature(at_K),
             super::stocks::duration(kept),
             danger.because
         );
         return Some(
-            Finding::new(Code::DoesNotKeep, storage.at, message)
+            Finding::new(Code::DoesNotKeep, at, message)
                 .help(danger.advice.clone().unwrap_or_default())
                 .related(line.at, "added here")
                 .about(NameKey::new(&line.name).as_str()),
