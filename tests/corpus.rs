@@ -51,6 +51,34 @@ fn published_recipes_are_written_without_fault() {
 }
 
 #[test]
+fn recipes_stand_in_the_columns_of_the_formatter() {
+    for path in ["src/library/data", "tests/published", "tests/library"].into_iter().flat_map(recipes) {
+        let text = std::fs::read_to_string(&path).expect("a readable file");
+        let formatted = scruple::syntax::format(&text);
+        let moved = text.lines().zip(formatted.lines()).find(|(written, laid_out)| written != laid_out);
+        assert_eq!(moved, None, "{}", path.display());
+        assert_eq!(text, formatted, "{}", path.display());
+    }
+}
+
+#[test]
+fn a_change_of_one_quantity_changes_one_line() {
+    for path in recipes("tests/library") {
+        let text = std::fs::read_to_string(&path).expect("a readable file");
+        for (number, line) in text.lines().enumerate().filter(|(_, line)| line.starts_with("    ") && line[4..].starts_with(|c: char| c.is_ascii_digit())) {
+            let changed: Vec<String> = text
+                .lines()
+                .enumerate()
+                .map(|(index, other)| if index == number { line.replacen(|c: char| c.is_ascii_digit(), "12345", 1) } else { other.to_owned() })
+                .collect();
+            let formatted = scruple::syntax::format(&(changed.join("\n") + "\n"));
+            let differing = text.lines().zip(formatted.lines()).filter(|(one, other)| one != other).count();
+            assert_eq!(differing, 1, "{}:{}", path.display(), number + 1);
+        }
+    }
+}
+
+#[test]
 fn recipes_that_must_stay_silent_are_written_without_fault() {
     let near = recipes("tests/fixtures/findings");
     let near = near.iter().filter(|path| path.to_string_lossy().contains(".near"));

@@ -1,4 +1,4 @@
-//! Every example of the language reference and of the README is read without a fault and worked out.
+//! Every example of the language reference and of its summary is read without a fault and worked out.
 
 use std::sync::Arc;
 
@@ -12,11 +12,17 @@ fn examples(page: &str) -> Vec<&str> {
     page.split("```prep\n").skip(1).filter_map(|rest| rest.split("```").next()).collect()
 }
 
+/// The summary is an example to follow: it has no open warning either.
+fn is_summary(number: usize, examples: &[&str]) -> bool {
+    number + 1 == examples.len()
+}
+
 #[test]
 fn every_example_of_the_reference_is_worked_out() {
-    let page = include_str!("../grammar/README.md");
-    let examples = examples(page);
-    assert!(examples.len() >= 4);
+    let reference = examples(include_str!("../grammar/README.md"));
+    let summary = examples(include_str!("../grammar/SUMMARY.md"));
+    assert!(reference.len() >= 6 && summary.len() == 1);
+    let examples: Vec<&str> = reference.into_iter().chain(summary).collect();
     for (number, text) in examples.iter().enumerate() {
         let mut workspace = Workspace::new();
         let path = format!("/reference/example-{number}.prep");
@@ -26,6 +32,7 @@ fn every_example_of_the_reference_is_worked_out() {
             let finding = &located.finding;
             assert!(finding.level < Level::Error, "{}: {}\n{text}", finding.code.name(), finding.message);
             assert!(finding.code != Code::WrittenForm, "{}\n{text}", finding.message);
+            assert!(finding.level < Level::Warning || !is_summary(number, &examples), "{}: {}", finding.code.name(), finding.message);
         }
         for (file, index, block) in snapshot.solutions() {
             let checked = snapshot.checked(file.id, index).expect("every solution is checked");

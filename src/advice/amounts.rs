@@ -228,13 +228,13 @@ pub(super) fn volume_from_density(case: &Case, findings: &mut Vec<Finding>) {
 
 /// A volume fraction of a concentrated reagent that can be read in two ways.
 pub(super) fn percent_of_what(case: &Case, findings: &mut Vec<Finding>) {
-    let Some(recipe) = case.recipe() else { return };
+    let Some(recipe) = case.own_recipe() else { return };
     for (entry, addition) in additions(recipe) {
         let Some(amount) = addition.amounts.first().filter(|amount| amount.dimension() == Dimension::VolumeFraction) else { continue };
         if addition.qualifiers.from.is_some() || matches!(case.block.body, Body::Bottle(_)) {
             continue;
         }
-        let Lookup::One(definition) = case.context.scope.find(Namespace::Ingredient, &addition.what.key, &addition.what.text) else {
+        let Lookup::One(definition) = case.context.scope_of(&addition.what).find(Namespace::Ingredient, &addition.what.key, &addition.what.text) else {
             continue;
         };
         let Body::Bottle(_) = &definition.block.body else { continue };

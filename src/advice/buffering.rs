@@ -87,7 +87,8 @@ pub(super) fn ph_is_wanted(recipe: &Recipe) -> Option<Anchor> {
         Action::Pair(pair) => pair.goals.iter().find(|goal| is_ph(&goal.kind)).map(|goal| goal.at),
         _ => None,
     });
-    set.or_else(|| recipe.expectations.iter().find(|expectation| expectation.property == Property::Ph).map(|expectation| expectation.at))
+    let mut expected = recipe.expectations.iter().filter(|one| one.property == Property::Ph && one.diluted.is_none());
+    set.or_else(|| expected.next().map(|expectation| expectation.at))
 }
 
 /// Total of what can take up or give off protons between pH 2 and 12, mol/L.

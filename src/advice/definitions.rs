@@ -86,9 +86,9 @@ pub(super) fn bad_definition(case: &Case, findings: &mut Vec<Finding>) {
 
 /// A reference spelled otherwise than where it is defined: text search and review then miss it.
 pub(super) fn spelled_otherwise(case: &Case, findings: &mut Vec<Finding>) {
-    let Some(recipe) = case.recipe() else { return };
+    let Some(recipe) = case.own_recipe() else { return };
     let mut look = |reference: &Reference| {
-        let Lookup::One(definition) = case.context.scope.find(Namespace::Ingredient, &reference.key, &reference.text) else { return };
+        let Lookup::One(definition) = case.context.scope_of(reference).find(Namespace::Ingredient, &reference.key, &reference.text) else { return };
         // Substances have many spellings in the trade; what a laboratory names itself has one.
         if !matches!(definition.block.kind(), Some(BlockKind::Solution | BlockKind::Bottle)) {
             return;
@@ -110,24 +110,7 @@ pub(super) fn spelled_otherwise(case: &Case, findings: &mut Vec<Finding>) {
             .fix(Fix::replace(format!("Write {}", written.text), reference.at, crate::evaluate::written_form(&written.text))),
         );
     };
-    for entry in &recipe.entries {
-        match &entry.action {
-            Action::Add(addition) | Action::Alternative(addition) => {
-                look(&addition.what);
-                addition.qualifiers.from.iter().for_each(&mut look);
-            }
-            Action::Pair(pair) => {
-                look(&pair.first);
-                look(&pair.second);
-            }
-            Action::MakeUp(make_up) => {
-                look(&make_up.what);
-                make_up.alternative.iter().for_each(&mut look);
-            }
-            Action::AddAll(reference) => look(reference),
-            _ => {}
-        }
-    }
+    recipe.entries.iter().flat_map(|entry| entry.action.ingredients()).for_each(&mut look);
 }
 
 /// The place of a line's whole statement, for rules that speak of it.

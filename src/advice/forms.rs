@@ -31,10 +31,9 @@ pub(super) fn other_hydrates<'a>(case: &Case<'a>, definition: &Definition) -> Ve
             let Body::Substance(candidate) = &other.block.body else { continue };
             let Some((_, other_formula)) = &candidate.formula else { continue };
             if other.key != definition.key
-                && candidate.gives.len() == substance.gives.len()
                 && differ_by_water(formula, other_formula)
-                && same_gives(&candidate.gives, &substance.gives)
-                && (!substance.gives.is_empty() || is_named_after(definition.name(), other.name()))
+                && (same_gives(&gives(definition, substance), &gives(other, candidate))
+                    || substance.gives.is_empty() && candidate.gives.is_empty() && is_named_after(definition.name(), other.name()))
                 && !found.iter().any(|known| known.key == other.key)
             {
                 found.push(other);
@@ -63,8 +62,16 @@ fn is_named_after(one: &str, other: &str) -> bool {
     one.starts_with(other) || other.starts_with(one)
 }
 
-fn same_gives(one: &[(f64, Reference)], other: &[(f64, Reference)]) -> bool {
-    one.iter().all(|(count, name)| other.iter().any(|(other_count, other_name)| count == other_count && name.key == other_name.key))
+/// What a substance gives in water; what gives nothing else gives itself.
+fn gives<'a>(definition: &'a Definition, substance: &'a Substance) -> Vec<(f64, &'a NameKey)> {
+    match &definition.block.name {
+        Some(name) if substance.gives.is_empty() => vec![(1.0, &name.key)],
+        _ => substance.gives.iter().map(|(count, reference)| (*count, &reference.key)).collect(),
+    }
+}
+
+fn same_gives(one: &[(f64, &NameKey)], other: &[(f64, &NameKey)]) -> bool {
+    one.len() == other.len() && one.iter().all(|gives| other.contains(gives))
 }
 
 /// Whether a substance's formula holds water of crystallisation.
@@ -76,7 +83,7 @@ fn is_hydrate(substance: &Substance) -> bool {
 
 /// A mass of something that is sold in several hydrates, under a name that does not say which.
 pub(super) fn hydrate_not_stated(case: &Case, findings: &mut Vec<Finding>) {
-    let Some(recipe) = case.recipe() else { return };
+    let Some(recipe) = case.own_recipe() else { return };
     for entry in &recipe.entries {
         let Action::Add(addition) = &entry.action else { continue };
         let Some(amount) = addition.amounts.first() else { continue };
@@ -85,6 +92,7 @@ pub(super) fn hydrate_not_stated(case: &Case, findings: &mut Vec<Finding>) {
         if !is_by_mass
             || qualifiers.from.is_some()
             || qualifiers.dried_at.is_some()
+            || qualifiers.water.is_some()
             || addition.what.strength.is_some()
             || addition.as_formula.is_some()
             || addition.what.key.as_str().contains("anhydrous")
@@ -92,14 +100,16 @@ pub(super) fn hydrate_not_stated(case: &Case, findings: &mut Vec<Finding>) {
         {
             continue;
         }
-        let Lookup::One(definition) = case.context.scope.find(Namespace::Ingredient, &addition.what.key, &addition.what.text) else {
+        let Lookup::One(definition) = case.context.scope_of(&addition.what).find(Namespace::Ingredient, &addition.what.key, &addition.what.text) else {
             continue;
         };
         let Body::Substance(substance) = &definition.block.body else { continue };
         // A formula, and a name that only the anhydrous form bears, say which form is meant.
         let is_own_name = definition.block.name.as_ref().is_some_and(|name| name.key == addition.what.key)
             || definition.block.also.iter().any(|name| name.key == addition.what.key);
-        if is_hydrate(substance) || !is_own_name || crate::syntax::formula::parse(&addition.what.text).is_ok() {
+        // What is sold in water only is weighed in no form.
+        let is_weighed = substance.form.as_deref().is_none_or(|form| form == "solid");
+        if !is_weighed || is_hydrate(substance) || !is_own_name || crate::syntax::formula::parse(&addition.what.text).is_ok() {
             continue;
         }
         let hydrates: Vec<&Definition> = other_hydrates(case, definition)
@@ -142,7 +152,7 @@ pub(super) fn hydrate_not_stated(case: &Case, findings: &mut Vec<Finding>) {
 
 /// A mass that is a round amount of another hydrate than the one named.
 pub(super) fn mass_fits_other_hydrate(case: &Case, findings: &mut Vec<Finding>) {
-    let Some(recipe) = case.recipe() else { return };
+    let Some(recipe) = case.own_recipe() else { return };
     let Some(outcome) = case.outcomes().next() else { return };
     for entry in &recipe.entries {
         let Action::Add(addition) = &entry.action else { continue };
@@ -150,7 +160,7 @@ pub(super) fn mass_fits_other_hydrate(case: &Case, findings: &mut Vec<Finding>) 
         if addition.amounts.len() > 1 || addition.what.strength.is_some() {
             continue;
         }
-        let Lookup::One(definition) = case.context.scope.find(Namespace::Ingredient, &addition.what.key, &addition.what.text) else {
+        let Lookup::One(definition) = case.context.scope_of(&addition.what).find(Namespace::Ingredient, &addition.what.key, &addition.what.text) else {
             continue;
         };
         let Body::Substance(substance) = &definition.block.body else { continue };
@@ -209,7 +219,7 @@ fn is_round(value: f64, precision: f64) -> bool {
 
 /// A mass concentration of an ion that is reported in two ways.
 pub(super) fn as_what(case: &Case, findings: &mut Vec<Finding>) {
-    let Some(recipe) = case.recipe() else { return };
+    let Some(recipe) = case.own_recipe() else { return };
     for expectation in recipe.expectations.iter().filter(|expectation| expectation.as_formula.is_none()) {
         let (Property::Total(reference) | Property::Free(reference)) = &expectation.property else { continue };
         let is_mass = expectation.unit.is_some_and(|unit| {

@@ -48,6 +48,12 @@ impl<'a> Case<'a> {
         self.evaluation.recipe.as_deref().or(self.block.recipe())
     }
 
+    /// The recipe as its own lines say it, for what concerns how a line is written: lines taken over are judged where they
+    /// stand.
+    pub fn own_recipe(&self) -> Option<&'a Recipe> {
+        self.block.recipe()
+    }
+
     /// The outcomes of the solution, or of every member of a series.
     pub fn outcomes(&self) -> impl Iterator<Item = &'a Outcome> {
         self.evaluation.members.iter().filter_map(|member| member.outcome.as_deref())

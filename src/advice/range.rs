@@ -28,7 +28,7 @@ pub(super) fn outside_model_range(case: &Case, findings: &mut Vec<Finding>) {
         return;
     }
     let of_chemistry = |property: &Property| !matches!(property, Property::Total(_) | Property::Density);
-    let is_expected = ph_is_wanted(recipe).is_some() || recipe.expectations.iter().any(|one| of_chemistry(&one.property));
+    let is_expected = ph_is_wanted(recipe).is_some() || recipe.expectations.iter().any(|one| one.diluted.is_none() && of_chemistry(&one.property));
     for outcome in case.outcomes() {
         let at = case.block.header_anchor();
         let state = match &outcome.finished {

@@ -92,7 +92,7 @@ pub(super) fn liquid_counted_in(case: &Case, findings: &mut Vec<Finding>) {
 pub(super) fn about_differs(case: &Case, findings: &mut Vec<Finding>) {
     let Some(recipe) = case.recipe() else { return };
     let Some(outcome) = case.outcomes().next() else { return };
-    for line in outcome.lines.iter().filter(|line| line.role == Role::Adjusts) {
+    for line in outcome.lines.iter().filter(|line| line.role == Role::Adjusts && !recipe.is_taken_over(line.at)) {
         let Some(Action::MakeUp(make_up)) = recipe.entries.get(line.entry).map(|entry| &entry.action) else { continue };
         let Some(about) = &make_up.qualifiers.about else { continue };
         if make_up.goals.iter().any(|goal| matches!(goal.kind, crate::model::GoalKind::ByEye(_))) {

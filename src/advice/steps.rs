@@ -11,7 +11,7 @@ const LONGEST_NAME: usize = 6;
 
 /// Says that a step states an amount of a known thing.
 pub(super) fn quantity_in_step(case: &Case, findings: &mut Vec<Finding>) {
-    let Some(recipe) = case.recipe() else { return };
+    let Some(recipe) = case.own_recipe() else { return };
     for step in &recipe.steps {
         let words = words(&step.value);
         for (index, pair) in words.windows(2).enumerate() {

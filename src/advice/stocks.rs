@@ -18,7 +18,7 @@ const DENSITY: f64 = 0.006;
 
 /// The definitions of the solutions and bottles that a line takes.
 fn taken<'a>(case: &Case<'a>, reference: &Reference) -> Option<&'a Definition> {
-    match case.context.scope.find(Namespace::Ingredient, &reference.key, &reference.text) {
+    match case.context.scope_of(reference).find(Namespace::Ingredient, &reference.key, &reference.text) {
         Lookup::One(definition) => Some(definition),
         _ => None,
     }
@@ -29,11 +29,26 @@ fn is_water(line: &LineOutcome) -> bool {
     line.per_kg.amounts_mol.is_empty() && line.per_kg.inert_mass_kg == 0.0
 }
 
-/// How long a recipe keeps, s; none where it does not say.
-fn keeps(recipe: &Recipe) -> Option<(f64, Anchor)> {
-    let stored = recipe.storage.iter().filter_map(|storage| storage.duration.map(|seconds| (seconds, storage.at)));
-    let within = recipe.use_within.map(|within| (within.value, within.at));
+/// How long a part of a recipe keeps, s; none where it does not say.
+fn part_keeps(recipe: &Recipe, part: usize) -> Option<(f64, Anchor)> {
+    let of_part = recipe.storage.iter().filter(|storage| storage.part == part);
+    let stored = of_part.filter_map(|storage| storage.duration.map(|seconds| (seconds, storage.at)));
+    let within = recipe.use_within.filter(|_| part == last_part(recipe)).map(|within| (within.value, within.at));
     stored.chain(within).min_by(|one, other| one.0.total_cmp(&other.0))
+}
+
+fn last_part(recipe: &Recipe) -> usize {
+    recipe.entries.iter().filter(|entry| matches!(entry.action, Action::Divider(_))).count()
+}
+
+/// How long what goes in at a part has to keep, s: the longest keeping of that part and of those that it goes on into.
+fn must_keep(recipe: &Recipe, part: usize) -> Option<(f64, Anchor)> {
+    (part..=last_part(recipe)).filter_map(|part| part_keeps(recipe, part)).max_by(|one, other| one.0.total_cmp(&other.0))
+}
+
+/// How long a solution keeps in the state in which others take it, s.
+fn keeps(recipe: &Recipe) -> Option<(f64, Anchor)> {
+    (0..=last_part(recipe)).rev().find_map(|part| part_keeps(recipe, part))
 }
 
 pub(super) fn duration(seconds: f64) -> String {
@@ -50,16 +65,11 @@ pub(super) fn duration(seconds: f64) -> String {
 /// A product kept longer than something in it.
 pub(super) fn outlives_its_parts(case: &Case, findings: &mut Vec<Finding>) {
     let Some(recipe) = case.recipe() else { return };
-    let Some((own, at)) = keeps(recipe) else { return };
+    let mut at_part = 0;
     for entry in &recipe.entries {
-        let references: Vec<&Reference> = match &entry.action {
-            Action::Add(addition) => std::iter::once(&addition.what).chain(&addition.qualifiers.from).collect(),
-            Action::MakeUp(make_up) => std::iter::once(&make_up.what).chain(&make_up.alternative).collect(),
-            Action::Pair(pair) => vec![&pair.first, &pair.second],
-            Action::AddAll(reference) => vec![reference],
-            _ => continue,
-        };
-        for reference in references {
+        at_part += usize::from(matches!(entry.action, Action::Divider(_)));
+        let Some((own, at)) = must_keep(recipe, at_part) else { continue };
+        for reference in entry.action.ingredients() {
             let Some(definition) = taken(case, reference) else { continue };
             let Some((part, _)) = definition.block.recipe().and_then(keeps) else { continue };
             if own <= part * 1.001 {
@@ -99,14 +109,21 @@ pub(super) fn fold_mismatch(case: &Case, findings: &mut Vec<Finding>) {
         Finding::new(
             Code::FoldMismatch,
             line.at,
-            format!("{} is diluted {}-fold here, but it is {}x.", reference.text, format::significant(fold, 3), format::plain(stated)),
+            format!("{} is diluted {}-fold here, but it is {}x.", reference.text, fold_words(fold), format::plain(stated)),
         )
         .help(format!("For the strength of use take {} of it.", format::volume(outcome.volume_L / stated, 3)))
         .about(reference.key.as_str()),
     );
 }
 
-/// `TAE 50x`: a factor at the end of a name.
+/// A factor as people write it: three figures, and no zeros behind the point.
+fn fold_words(fold: f64) -> String {
+    let decimals = if fold < 9.995 { 2 } else if fold < 99.95 { 1 } else { 0 };
+    let shown = format::fixed(fold, decimals);
+    if shown.contains('.') { shown.trim_end_matches('0').trim_end_matches('.').to_owned() } else { shown }
+}
+
+/// `50x` at the end of a name: a factor.
 fn fold_in_name(name: &str) -> Option<f64> {
     let word = name.split_whitespace().rev().find(|word| word.ends_with(['x', '×']))?;
     word.trim_end_matches(['x', '×']).parse().ok().filter(|fold: &f64| *fold > 1.0)
@@ -139,7 +156,10 @@ pub(super) fn dilution_shift(case: &Case, findings: &mut Vec<Finding>) {
     let Some(fold) = recipe.concentrate else { return };
     let Some(outcome) = case.outcomes().next() else { return };
     let Ok(state) = &outcome.finished else { return };
-    if super::buffering::buffering_total(case, outcome) < 0.001 || fold.value <= 1.0 {
+    // Who sets or expects the pH of the diluted solution has seen the shift.
+    let is_seen = recipe.entries.iter().any(|entry| entry.action.goals().iter().any(|goal| goal.diluted.is_some()))
+        || recipe.expectations.iter().any(|one| one.property == Property::Ph && one.diluted.is_some());
+    if is_seen || super::buffering::buffering_total(case, outcome) < 0.001 || fold.value <= 1.0 {
         return;
     }
     let Ok(diluted) = state.diluted_with((fold.value - 1.0) * outcome.volume_L) else { return };
@@ -209,10 +229,10 @@ pub(super) fn dilution_shift_by_use(case: &Case, users: &[User], findings: &mut 
                 "Set to pH {} here, it is {} when {name} dilutes it {}-fold.",
                 format::ph(before.pH()),
                 format::ph(after),
-                format::significant(fold, 2)
+                fold_words(fold)
             ),
         )
-        .help(format!("Set the pH for the use: `to pH … diluted {}-fold`.", format::significant(fold, 2)))
+        .help(format!("Set the pH for the use: `to pH … diluted {}-fold`.", fold_words(fold)))
         .related_at(
             Place::Block { file: user.file, key: NameKey::new(name).as_str().to_string(), anchor: user.block.header_anchor() },
             format!("{name} dilutes it"),
@@ -278,7 +298,7 @@ pub(super) fn salt_shift(case: &Case, findings: &mut Vec<Finding>) {
 
 /// A label's density that belongs to another strength.
 pub(super) fn strength_density_disagree(case: &Case, findings: &mut Vec<Finding>) {
-    let Some(recipe) = case.recipe() else { return };
+    let Some(recipe) = case.own_recipe() else { return };
     let mut judge = |at: Anchor, density: f64, share: f64, reference: &Reference| {
         let Some(Body::Substance(substance)) = taken_substance(case, reference).map(|definition| &definition.block.body) else { return };
         let Some(expected) = table_density(substance, share) else { return };
@@ -342,7 +362,7 @@ fn taken_substance<'a>(case: &Case<'a>, reference: &Reference) -> Option<&'a Def
 pub(super) fn stock_found(case: &Case, findings: &mut Vec<Finding>) {
     let Some(recipe) = case.recipe() else { return };
     let Some(outcome) = case.outcomes().next() else { return };
-    for line in &outcome.lines {
+    for line in outcome.lines.iter().filter(|line| !recipe.is_taken_over(line.at)) {
         let reference = match recipe.entries.get(line.entry).map(|entry| &entry.action) {
             Some(Action::Add(addition)) => &addition.what,
             Some(Action::MakeUp(make_up)) => match &make_up.alternative {

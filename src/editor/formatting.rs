@@ -11,9 +11,8 @@ pub fn formatting(snapshot: &Snapshot, file: FileId) -> Option<Vec<(Span, String
     if matches!(state.origin, Origin::Unreadable(_) | Origin::BuiltIn) {
         return None;
     }
-    let ending = if state.source.as_str().contains("\r\n") { "\r\n" } else { "\n" };
     let edits = state.tree.lines.iter().filter_map(|placed| {
-        let laid_out = syntax::format_line(&placed.line, ending);
+        let laid_out = syntax::format_line(&placed.line);
         (laid_out != placed.line.text).then(|| difference(placed.start, &placed.line.text, &laid_out))
     });
     Some(edits.collect())

@@ -2,13 +2,13 @@
 
 use std::sync::Arc;
 
-use super::names::{self, Found, written_form};
+use super::names::{self, Found, listed, written_form};
 use super::strength::{mass_fraction, table_density};
-use super::{Context, Outcome, Refusal, Solute, ingredient_has_no_value};
+use super::{Context, Evaluation, Member, Outcome, Refusal, Solute, ingredient_has_no_value};
 use crate::chemistry::{Mixture, State, water};
-use crate::finding::{Code, Finding};
+use crate::finding::{Code, Finding, Fix};
 use crate::model::{
-    Amount, DefinitionKey, Lookup, NameKey, Namespace, Qualifiers, Reference, StrengthKind, Substance, is_water,
+    Amount, DefinitionKey, Lookup, NameKey, Namespace, Qualifiers, Reference, StrengthKind, Substance, is_water, member_of_series,
 };
 use crate::syntax::tree::BlockKind;
 use crate::units::Dimension;
@@ -88,7 +88,7 @@ fn which_bottle(reference: &Reference, stocks: &[&crate::model::Definition]) -> 
     .about(reference.key.as_str());
     for stock in stocks {
         finding = finding
-            .fix(crate::finding::Fix::replace(format!("Write {}", stock.name()), at, written_form(stock.name())))
+            .fix(Fix::replace(format!("Write {}", stock.name()), at, written_form(stock.name())))
             .related_at(names::place_of(stock), format!("{} is defined here", stock.name()));
     }
     finding
@@ -154,7 +154,7 @@ fn named_like_a_strength(reference: &Reference, amount: &Amount, context: &Conte
     // Twelve digits, so that the way to the base unit and back does not show.
     let value: f64 = format!("{:.11e}", amount.unit.from_base(amount.value)).parse().ok()?;
     let names = amount.unit.spellings().iter().map(|unit| format!("{value} {unit} {}", reference.text));
-    let found = names.into_iter().find_map(|name| match context.scope.find(Namespace::Ingredient, &NameKey::new(&name), &name) {
+    let found = names.into_iter().find_map(|name| match context.scope_of(reference).find(Namespace::Ingredient, &NameKey::new(&name), &name) {
         Lookup::One(definition) => Some(definition.clone()),
         Lookup::Nothing | Lookup::Several(_) => None,
     })?;
@@ -377,22 +377,42 @@ pub fn scaled(solute: &Solute, factor: f64) -> Solute {
     }
 }
 
+/// Whether a definition is called by the very name of a reference.
+fn bears_name(found: &Found, reference: &Reference) -> bool {
+    found.definition.block.name.iter().chain(&found.definition.block.also).any(|name| name.key == reference.key)
+}
+
+/// The member of a series that a reference names.
+fn member<'e>(reference: &Reference, series: &str, members: &'e [Member]) -> Result<&'e Member, Refusal> {
+    if let Some(member) = members.iter().find(|member| NameKey::new(&member.name) == reference.key) {
+        return Ok(member);
+    }
+    let names: Vec<&str> = members.iter().map(|member| member.name.as_str()).collect();
+    let finding = match members.len() {
+        1 => Finding::new(Code::UnknownName, reference.at, format!("{series} is one solution, and no series with members."))
+            .help(format!("Write {series}.")),
+        count => Finding::new(
+            Code::AmbiguousName,
+            reference.at,
+            format!("{series} is a series of {count} solutions: {}.", listed(&names)),
+        )
+        .help("Name the member that is meant."),
+    };
+    let write = |name: &&str| Fix::replace(format!("Write {name}"), reference.at, written_form(name));
+    Err(finding.about(reference.key.as_str()).fixes(names.iter().map(write)).into())
+}
+
 /// A solution or bottle of the library as an ingredient.
 fn stock(reference: &Reference, found: &Found, temperature_K: f64, context: &Context) -> Result<Goods, Refusal> {
     let key = &found.definition.key;
     let name = found.definition.name();
     let evaluation = (context.stocks)(key);
-    let outcome = evaluation.as_ref().and_then(|evaluation| evaluation.outcome()).cloned();
-    let members = evaluation.map_or(1, |evaluation| evaluation.members.len());
-    if members > 1 {
-        return Err(Finding::new(
-            Code::AmbiguousName,
-            reference.at,
-            format!("{name} is a series of {members} solutions; which one is meant is not said."),
-        )
-        .help(format!("Name the member, for instance {}.", written_form(&format!("{name} (VALUE)"))))
-        .into());
-    }
+    let outcome = match evaluation.as_deref() {
+        Some(Evaluation { members, .. }) if members.len() > 1 || member_of_series(&reference.text).is_some_and(|_| !bears_name(found, reference)) => {
+            member(reference, name, members)?.outcome.clone()
+        }
+        evaluation => evaluation.and_then(|evaluation| evaluation.outcome()).cloned(),
+    };
     let Some(outcome) = outcome else {
         return Err(ingredient_has_no_value(reference.at, name, key).into());
     };

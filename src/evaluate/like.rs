@@ -4,6 +4,7 @@ use super::names::{ingredient, place_of};
 use super::{Context, Refusal};
 use crate::finding::{Anchor, Code, Finding};
 use crate::model::*;
+use crate::text::FileId;
 
 /// A chain of likenesses longer than this is a mistake; circles are told apart before.
 const LONGEST_CHAIN: usize = 32;
@@ -40,26 +41,42 @@ pub(super) fn with_likeness(recipe: &Recipe, context: &Context, depth: usize) ->
     }
     let base = with_likeness(other, context, depth + 1)
         .map_err(|_| Refusal::from(super::ingredient_has_no_value(reference.at, &reference.text, &found.definition.key)))?;
+    let at = reference.at;
+    if recipe.members > 1 && base.members > 1 && recipe.members != base.members {
+        let message = format!("This solution has {} members, the one that it is like has {}.", recipe.members, base.members);
+        return Err(Finding::new(Code::SaidTwiceDifferently, at, message)
+            .help("Lists of one series go along in step; give them as many values.")
+            .into());
+    }
     let mut merged = recipe.clone();
-    merged.entries = entries(recipe, &base, reference.at)?;
+    merged.entries = entries(recipe, &base, at, found.definition.key.file)?;
     merged.members = recipe.members.max(base.members);
-    merged.made_at = recipe.made_at.or(base.made_at);
-    merged.makes = recipe.makes.or(base.makes);
-    merged.concentrate = recipe.concentrate.or(base.concentrate);
-    merged.lab = recipe.lab.clone().or(base.lab);
+    if recipe.members <= 1 {
+        merged.series = base.series;
+    }
+    merged.made_at = recipe.made_at.or(here(base.made_at, at));
+    merged.makes = recipe.makes.or(here(base.makes, at));
+    merged.concentrate = recipe.concentrate.or(here(base.concentrate, at));
     if recipe.atmosphere.is_none() {
         merged.gas_in_use_only = base.gas_in_use_only;
-        merged.atmosphere = base.atmosphere.map(|gas| Stated { at: reference.at, ..gas });
+        merged.atmosphere = here(base.atmosphere, at);
     }
-    merged.use_within = recipe.use_within.or(base.use_within);
-    merged.ready_after = recipe.ready_after.or(base.ready_after);
+    merged.use_within = recipe.use_within.or(here(base.use_within, at));
+    merged.ready_after = recipe.ready_after.or(here(base.ready_after, at));
+    merged.steps = base.steps.into_iter().map(|step| Stated { at, ..step }).chain(merged.steps).collect();
+    merged.records = base.records.into_iter().map(|record| Stated { at, ..record }).chain(merged.records).collect();
     if recipe.used_at.is_empty() {
-        merged.used_at = base.used_at.iter().map(|used| Stated { at: reference.at, ..*used }).collect();
+        merged.used_at = base.used_at.iter().map(|used| Stated { at, ..*used }).collect();
     }
     if recipe.storage.is_empty() {
-        merged.storage = base.storage.into_iter().map(|storage| Storage { at: reference.at, ..storage }).collect();
+        merged.storage = base.storage.into_iter().map(|storage| Storage { at, ..storage }).collect();
     }
     Ok(merged)
+}
+
+/// A condition that holds at the `like` line.
+fn here<T>(stated: Option<Stated<T>>, at: Anchor) -> Option<Stated<T>> {
+    stated.map(|stated| Stated { at, ..stated })
 }
 
 /// What an entry brings in, by name.
@@ -83,9 +100,10 @@ fn is_make_up(entry: &Entry) -> bool {
 }
 
 /// The other's entries with this one's put in: in place of the line of the same name, else before the make-up.
-fn entries(recipe: &Recipe, base: &Recipe, at: Anchor) -> Result<Vec<Entry>, Refusal> {
-    let mut merged: Vec<(bool, Entry)> =
-        base.entries.iter().map(|entry| (false, Entry { at, ..entry.clone() })).collect();
+fn entries(recipe: &Recipe, base: &Recipe, at: Anchor, home: FileId) -> Result<Vec<Entry>, Refusal> {
+    // A found strength is that of one batch, and this is another.
+    let made = base.entries.iter().filter(|entry| !matches!(entry.action, Action::Found { .. }));
+    let mut merged: Vec<(bool, Entry)> = made.map(|entry| (false, entry.taken_over(at, home))).collect();
     for left_out in &recipe.without {
         let before = merged.len();
         merged.retain(|(_, entry)| name_of(entry) != Some(&left_out.key));
@@ -96,14 +114,18 @@ fn entries(recipe: &Recipe, base: &Recipe, at: Anchor) -> Result<Vec<Entry>, Ref
                 .into());
         }
     }
+    // What stands below a divider of this one's own is added last.
+    let mut is_later = false;
     for entry in &recipe.entries {
+        is_later |= matches!(entry.action, Action::Divider(_));
         let same = merged.iter().position(|(own, old)| {
             !own && name_of(old).is_some() && name_of(old) == name_of(entry) && is_make_up(old) == is_make_up(entry)
         });
         match same.and_then(|index| merged.get_mut(index)) {
             Some(slot) => *slot = (true, entry.clone()),
             None => {
-                let last = merged.iter().rposition(|(_, old)| is_make_up(old)).unwrap_or(merged.len());
+                let mark = merged.iter().rposition(|(_, old)| is_make_up(old)).filter(|_| !is_later);
+                let last = mark.unwrap_or(merged.len());
                 merged.insert(last, (true, entry.clone()));
             }
         }

@@ -16,6 +16,7 @@ mod solubility;
 mod strength;
 mod verdicts;
 
+use std::collections::HashMap;
 use std::sync::Arc;
 
 pub use above::{Above, carbon_dioxide};
@@ -29,7 +30,8 @@ pub use solubility::{SolidForm, solid_form, solids_of};
 
 use crate::chemistry::Settings;
 use crate::finding::{Anchor, Code, Finding, Place};
-use crate::model::{Block, Body, Constituents, DefinitionKey, Lab, Recipe, Scope, Stated};
+use crate::model::{Block, Body, Constituents, DefinitionKey, Lab, Recipe, Reference, Scope, Stated};
+use crate::text::FileId;
 
 /// Where no temperature is stated and no lab is in scope, K.
 pub const DEFAULT_TEMPERATURE_K: f64 = 298.15;
@@ -41,6 +43,8 @@ pub struct Context<'a> {
     pub constituents: &'a Constituents,
     /// The names visible from the solution's file.
     pub scope: &'a Scope,
+    /// The names visible from every file, for lines that come from another one.
+    pub scopes: &'a HashMap<FileId, Scope>,
     /// The evaluations of the solutions and bottles that it takes; none for one that is in a cycle with it.
     pub stocks: &'a (dyn Fn(&DefinitionKey) -> Option<Arc<Evaluation>> + Sync),
     /// The lab that it is made in.
@@ -49,7 +53,12 @@ pub struct Context<'a> {
     pub settings: &'a Settings,
 }
 
-impl Context<'_> {
+impl<'a> Context<'a> {
+    /// The scope in which a name has its meaning.
+    pub fn scope_of(&self, reference: &Reference) -> &'a Scope {
+        reference.home.and_then(|file| self.scopes.get(&file)).unwrap_or(self.scope)
+    }
+
     /// The temperature at which a recipe is made, K, with its half-width.
     pub fn made_at_K(&self, recipe: &Recipe) -> (f64, f64) {
         match (recipe.made_at, self.lab.and_then(|lab| lab.room)) {
@@ -87,7 +96,7 @@ pub fn evaluate(block: &Block, context: &Context) -> Evaluation {
             (true, true) => settle(bottle::evaluate(block, recipe, context), &mut findings),
             (true, false) => settle(bench::evaluate(block, recipe, index, context, &mut findings), &mut findings),
         };
-        members.push(Member { name: member_name(name, recipe, index), outcome: outcome.map(Arc::new) });
+        members.push(Member { name: recipe.member_name(name, index), outcome: outcome.map(Arc::new) });
     }
     if !recipe.sound || members.iter().any(|member| member.outcome.is_none()) {
         // Every name is looked up even where the first mistake leaves the recipe without values.
@@ -111,17 +120,6 @@ fn settle(result: Result<Outcome, Refusal>, findings: &mut Vec<Finding>) -> Opti
             findings.extend(refusal.into_findings());
             None
         }
-    }
-}
-
-/// `NAME`, or `NAME (4 mL)` for a member of a series.
-fn member_name(name: &str, recipe: &Recipe, index: usize) -> String {
-    if recipe.members <= 1 {
-        return name.to_string();
-    }
-    match plan::series_value(recipe, index) {
-        Some(value) => format!("{name} ({value})"),
-        None => format!("{name} ({})", index + 1),
     }
 }
 

@@ -32,10 +32,11 @@ impl<'a> Found<'a> {
 /// Finds an ingredient.
 pub fn ingredient<'a>(reference: &Reference, as_bought: bool, context: &Context<'a>) -> Result<Found<'a>, Refusal> {
     let pure_is_meant = !as_bought || reference.strength.is_some();
-    match meaning(&reference.key, &reference.text, pure_is_meant, context.scope) {
+    let scope = context.scope_of(reference);
+    match meaning(&reference.key, &reference.text, pure_is_meant, scope) {
         Lookup::One(definition) => Ok(Found { definition }),
         Lookup::Several(definitions) => Err(ambiguous(reference, &definitions).into()),
-        Lookup::Nothing => Err(unknown(reference, Namespace::Ingredient, context.scope).into()),
+        Lookup::Nothing => Err(unknown(reference, Namespace::Ingredient, scope).into()),
     }
 }
 
@@ -199,7 +200,7 @@ pub fn stocks_of_strength<'a>(
     context: &Context<'a>,
 ) -> Vec<&'a Definition> {
     let mut stocks: Vec<&Definition> = Vec::new();
-    for (namespace, _, definitions) in context.scope.own.all() {
+    for (namespace, _, definitions) in context.scope_of(reference).own.all() {
         for definition in definitions.iter().filter(|_| namespace == Namespace::Ingredient) {
             if !is_plain_stock_of(&definition.block, &reference.key) || stocks.iter().any(|known| known.key == definition.key) {
                 continue;
@@ -224,24 +225,7 @@ pub fn report_all(recipe: &Recipe, context: &Context, findings: &mut Vec<Finding
             findings.extend(refusal.into_findings());
         }
     };
-    for entry in &recipe.entries {
-        match &entry.action {
-            Action::Add(addition) | Action::Alternative(addition) => {
-                look(&addition.what);
-                addition.qualifiers.from.iter().for_each(&mut look);
-            }
-            Action::Pair(pair) => {
-                look(&pair.first);
-                look(&pair.second);
-            }
-            Action::MakeUp(make_up) => {
-                look(&make_up.what);
-                make_up.alternative.iter().for_each(&mut look);
-            }
-            Action::AddAll(reference) => look(reference),
-            _ => {}
-        }
-    }
+    recipe.entries.iter().flat_map(|entry| entry.action.ingredients()).for_each(&mut look);
 }
 
 /// A constituent by name: an ion, one of its forms, or a molecule; a substance that gives just one is understood.

@@ -157,6 +157,8 @@ pub struct LineOutcome {
     pub concentration_mol_per_L: Option<f64>,
     /// What one kilogram of it holds.
     pub per_kg: Mixture,
+    /// Whether it goes in by count (`2 each`): what it weighs and brings is not known, and nothing of it is counted.
+    pub by_count: bool,
 }
 
 /// The beaker at a line that sets the pH.

@@ -67,6 +67,7 @@ codes! {
     LineTooLong, "line-too-long", Error, "A line longer than the program reads.";
     // ── Blocks, files and names ──
     MisplacedStatement, "misplaced-statement", Error, "A statement that belongs in another kind of block.";
+    UnknownEdition, "unknown-edition", Error, "A file that asks for an edition of the language that the program does not know.";
     NamelessBlock, "nameless-block", Error, "Lines that belong to no block, because the header above them cannot be read.";
     SaidTwiceDifferently, "said-twice-differently", Error, "Two lines of a block that say different things where one is needed.";
     FileNotFound, "file-not-found", Error, "A file named by `use` that is not there.";

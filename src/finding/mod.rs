@@ -107,6 +107,12 @@ impl Fix {
         Fix { title: title.into(), edits: vec![Edit { place: EditPlace::Here(at), text: text.into() }] }
     }
 
+    /// The same fix, which puts this text at another place as well.
+    pub fn with(mut self, at: Anchor, text: impl Into<String>) -> Self {
+        self.edits.push(Edit { place: EditPlace::Here(at), text: text.into() });
+        self
+    }
+
     /// A fix that adds a line below the block's line of index `line`.
     pub fn line_below(title: impl Into<String>, line: usize, text: impl Into<String>) -> Self {
         Fix { title: title.into(), edits: vec![Edit { place: EditPlace::LineBelow(line), text: text.into() }] }

@@ -11,6 +11,7 @@ mod constituents;
 mod danger;
 mod phases;
 mod recipe;
+mod references;
 mod scope;
 mod substance;
 
@@ -22,5 +23,5 @@ pub use names::NameKey;
 pub use constituents::{CompositionRefusal, Constituent, Constituents, WATER_KG_PER_MOL, is_water};
 pub use phases::Phases;
 pub use recipe::*;
-pub use scope::{Definition, Lookup, Names, Scope};
+pub use scope::{Definition, Lookup, Names, Scope, member_of_series};
 pub use substance::*;

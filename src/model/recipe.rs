@@ -3,7 +3,7 @@
 
 use super::NameKey;
 use crate::finding::Anchor;
-use crate::text::Span;
+use crate::text::{FileId, Span};
 use crate::units::{Dimension, Unit, format};
 
 /// A value and where it was stated.
@@ -26,6 +26,8 @@ pub struct Reference {
     pub at: Anchor,
     /// The strength before it.
     pub strength: Option<Strength>,
+    /// The file in whose scope the name has its meaning, where that is not the one in which the recipe stands.
+    pub home: Option<FileId>,
 }
 
 /// How strong a thing is.
@@ -388,6 +390,8 @@ pub struct Storage {
     pub high: f64,
     /// How long, s.
     pub duration: Option<f64>,
+    /// Which part of the recipe it speaks of, counted by dividers.
+    pub part: usize,
     /// In what.
     pub material: Option<String>,
     /// `in the dark`.
@@ -423,6 +427,8 @@ pub struct Recipe {
     pub sound: bool,
     /// How many members a series has; 1 otherwise.
     pub members: usize,
+    /// What tells the members of a series apart, as written: `4 mL`, `pH 6.0`. Empty where there is no series.
+    pub series: Vec<String>,
     /// `made at`, K.
     pub made_at: Option<Stated<f64>>,
     /// `used at`, K, in the order written; a range is expanded to its ends and every 5 °C between.
@@ -455,6 +461,8 @@ pub struct Recipe {
     pub standardised_against: Option<Reference>,
     /// The steps' texts with their places.
     pub steps: Vec<Stated<String>>,
+    /// The values to write down, with their places.
+    pub records: Vec<Stated<String>>,
     /// `document`, `revision`, `effective`.
     pub document: Option<Stated<DocumentFields>>,
     /// A bottle's density, kg/m³.

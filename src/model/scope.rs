@@ -96,7 +96,8 @@ pub enum Lookup<'a> {
 }
 
 impl Scope {
-    /// What a name means in a namespace: own and used definitions first, then the built-in ones, then formulas.
+    /// What a name means in a namespace: own and used definitions first, then the built-in ones, then formulas, then the
+    /// members of a series (`NAME (4 mL)`), which mean the series.
     pub fn find(&self, namespace: Namespace, name: &NameKey, written: &str) -> Lookup<'_> {
         for names in [&self.own, &self.built_in] {
             match one_or_several(names.named(namespace, name)) {
@@ -115,13 +116,30 @@ impl Scope {
                 }
             }
         }
-        Lookup::Nothing
+        match member_of_series(written) {
+            Some(series) if namespace == Namespace::Ingredient => self.series(&NameKey::new(series)),
+            _ => Lookup::Nothing,
+        }
+    }
+
+    /// The solution of this name, where it is a series or may take one over.
+    fn series(&self, name: &NameKey) -> Lookup<'_> {
+        match self.own.named(Namespace::Ingredient, name) {
+            [one] if matches!(&one.block.body, Body::Solution(recipe) if recipe.members > 1 || recipe.like.is_some()) => Lookup::One(one),
+            _ => Lookup::Nothing,
+        }
     }
 
     /// Everything visible: own definitions first.
     pub fn all(&self) -> impl Iterator<Item = (Namespace, &NameKey, &[Definition])> {
         self.own.all().chain(self.built_in.all())
     }
+}
+
+/// The name before the value in brackets, where a name is written as that of a member: `Level` of `Level (4 mL)`.
+pub fn member_of_series(written: &str) -> Option<&str> {
+    let (series, _) = written.strip_suffix(')')?.rsplit_once(" (")?;
+    Some(series.trim_end())
 }
 
 fn one_or_several(definitions: &[Definition]) -> Lookup<'_> {

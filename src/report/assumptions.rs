@@ -4,6 +4,7 @@ use super::Subject;
 use super::reasons::model_name;
 use crate::chemistry::{State, Warning};
 use crate::evaluate::{DEFAULT_TEMPERATURE_K, Outcome};
+use crate::model::Body;
 use crate::units::format;
 
 /// What was taken for granted when the solution was worked out.
@@ -16,6 +17,8 @@ pub fn assumptions(subject: &Subject, outcome: &Outcome) -> Vec<String> {
         Some(above) => format!("The finished solution is closed; in use it is in equilibrium with {} above it, and no solid has formed.", above.name),
         None => "The solution is closed: no gas goes in or out, what is in it has come to equilibrium, and no solid has formed.".to_owned(),
     });
+    said.extend(by_count(subject, outcome));
+    said.extend(ideal_solutions(subject, outcome));
     for point in &outcome.set_points {
         if let Some(entry) = point.liquid_of.and_then(|entry| subject.recipe.entries.get(entry)) {
             let (set, made_up) = (subject.line(point.at), subject.line(entry.at));
@@ -30,6 +33,31 @@ pub fn assumptions(subject: &Subject, outcome: &Outcome) -> Vec<String> {
             said.push("Some molar volumes are estimated, so that volume and density are less sure than usual.".to_owned());
         }
         said.extend(state.warnings.iter().map(|warning| doubt(state, warning)));
+    }
+    said
+}
+
+/// What goes in by count holds something, and nobody says what.
+fn by_count(subject: &Subject, outcome: &Outcome) -> impl Iterator<Item = String> {
+    outcome.lines.iter().filter(|line| line.by_count).map(|line| {
+        format!("Line {}: what {} holds is not stated, and is not counted.", subject.line(line.at), line.name)
+    })
+}
+
+/// A strength before a name that no bottle or solution of the library is.
+fn ideal_solutions(subject: &Subject, outcome: &Outcome) -> Vec<String> {
+    let mut said = Vec::new();
+    for line in &outcome.lines {
+        let Some(entry) = subject.recipe.entries.get(line.entry) else { continue };
+        let has_strength = entry.action.ingredients().iter().any(|reference| reference.text == line.name && reference.strength.is_some());
+        let is_substance = subject.selection.definition(&line.definition).is_some_and(|block| matches!(block.body, Body::Substance(_)));
+        if has_strength && is_substance {
+            said.push(format!(
+                "Line {}: no bottle or solution in scope is just that, so {} at that strength in water is taken.",
+                subject.line(line.at),
+                line.name
+            ));
+        }
     }
     said
 }

@@ -20,7 +20,10 @@ pub fn amount_taken(subject: &Subject, line: &LineOutcome) -> String {
     match subject.recipe.entries.get(line.entry).map(|entry| &entry.action) {
         Some(Action::Add(addition)) => {
             let about = if addition.about { "about " } else { "" };
-            let amount = as_stated(subject, line, addition).unwrap_or_else(|| measured(FIGURES));
+            let amount = match addition.qualifiers.by_weight {
+                true => format::mass(line.mass_kg, FIGURES),
+                false => as_stated(subject, line, addition).unwrap_or_else(|| measured(FIGURES)),
+            };
             format!("{about}{amount}{}", tolerance(subject, line, addition))
         }
         // What a meter or a mark decides is known only about.
@@ -32,7 +35,7 @@ pub fn amount_taken(subject: &Subject, line: &LineOutcome) -> String {
 /// A mass or volume in the author's own digits; other quantities are worked out.
 fn as_stated(subject: &Subject, line: &LineOutcome, addition: &Addition) -> Option<String> {
     let amount = addition.amounts.get(subject.member_index).or(addition.amounts.last())?;
-    if !matches!(amount.dimension(), Dimension::Mass | Dimension::Volume) {
+    if !matches!(amount.dimension(), Dimension::Mass | Dimension::Volume | Dimension::Count) {
         return None;
     }
     // In a series the unit stands once, after the last value.
@@ -98,7 +101,11 @@ fn with_strength(subject: &Subject, line: &LineOutcome, reference: &Reference) -
 }
 
 fn goal_words(subject: &Subject, line: &LineOutcome, goal: &Goal) -> String {
-    if !subject.is_taken_over(line.at) && subject.recipe.members == 1 {
+    let is_only = match subject.recipe.entries.get(line.entry).map(|entry| &entry.action) {
+        Some(action) => action.goals().len() == 1,
+        None => true,
+    };
+    if is_only && !subject.is_taken_over(line.at) {
         return subject.written(goal.at.line, goal.at.span).trim_start_matches("to ").to_owned();
     }
     match &goal.kind {

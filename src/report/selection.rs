@@ -182,7 +182,7 @@ impl<'a> Subject<'a> {
 
     /// Whether a line was taken over from the solution that this one is `like`: its words stand in another block.
     pub fn is_taken_over(&self, at: Anchor) -> bool {
-        self.recipe.like.as_ref().is_some_and(|like| like.at.line == at.line)
+        self.recipe.is_taken_over(at)
     }
 
     /// The findings of the solution's block.

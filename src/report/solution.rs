@@ -264,7 +264,7 @@ fn ingredient(subject: &Subject, line: &LineOutcome) -> IngredientReport {
             Role::Adjusts => "adjusts",
         Role::Alternative => "alternative",
         },
-        mass_g: number(1000.0 * line.mass_kg),
+        mass_g: number(1000.0 * line.mass_kg).filter(|_| !line.by_count),
         volume_mL: line.volume_L.and_then(|volume| number(1000.0 * volume)),
         amount_mol: line.amount_mol.and_then(number),
         concentration_mol_per_L: line.concentration_mol_per_L.and_then(number),

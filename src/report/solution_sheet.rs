@@ -10,7 +10,7 @@ use super::solution::{conductivity, reason};
 use super::Subject;
 use crate::chemistry::{ALKALINITY_END_POINT_pH, State};
 use crate::evaluate::{LineOutcome, Outcome, SetPoint, Verdict, hardness_mol_per_L};
-use crate::model::{self, Body, Stated, Storage};
+use crate::model::{self, Action, Body, Stated, Storage};
 use crate::units::format;
 
 /// Significant figures of what is weighed and measured.
@@ -25,6 +25,8 @@ pub fn solution_sheet(subject: &Subject) -> Sheet {
             sheet.section("To weigh and measure", vec![Part::Table(ingredients(subject, outcome))]);
             sheet.section("Setting the pH", outcome.set_points.iter().map(|point| set_point(subject, point)).collect());
             sheet.section("Steps", vec![steps(subject)]);
+            sheet.section("To write down", vec![records(subject)]);
+            sheet.section("Parts", vec![Part::Table(parts(subject, outcome))]);
             sheet.section("Keeping", vec![Part::List(keeping(subject))]);
             sheet.section("Expected", vec![Part::Table(expected(subject, outcome))]);
             sheet.section("In the finished solution", vec![Part::Table(totals(outcome))]);
@@ -76,6 +78,9 @@ pub(super) fn facts(subject: &Subject, outcome: &Outcome) -> Vec<(String, String
     let mut fact = |name: &str, value: String| facts.push((name.to_owned(), value));
     if let Some(fold) = subject.recipe.concentrate {
         fact("concentrate", format!("{} times as strong as used", format::plain(fold.value)));
+    }
+    if let Some(standard) = &subject.recipe.standardised_against {
+        fact("standardised", format!("against {}", standard.text));
     }
     if let Some((computed, found)) = outcome.found {
         let computed = format::concentration(computed, FIGURES);
@@ -175,7 +180,10 @@ fn set_point(subject: &Subject, point: &SetPoint) -> Part {
         Some((low, high)) => format!(" ({} to {})", format::ph(low), format::ph(high)),
         None => String::new(),
     };
-    let elsewhere = if point.elsewhere { "; the target itself holds at another temperature or dilution" } else { "" };
+    let (window, elsewhere) = match point.elsewhere {
+        true => (String::new(), format!("; at the temperature or dilution of the target that is {}{window}", format::ph(point.aim))),
+        false => (window, String::new()),
+    };
     Part::Paragraph(format!(
         "Line {}: from pH {} to {}{window} on the meter, in {}{elsewhere}.",
         subject.line(point.at),
@@ -189,14 +197,42 @@ fn steps(subject: &Subject) -> Part {
     Part::List(subject.recipe.steps.iter().map(|step| format!("Line {}: {}", subject.line(step.at), step.value)).collect())
 }
 
+fn records(subject: &Subject) -> Part {
+    let records = subject.recipe.records.iter();
+    Part::List(records.map(|record| format!("Line {}: {} ________", subject.line(record.at), record.value)).collect())
+}
+
+/// What a recipe that is divided comes to, part by part, in the words of its dividers.
+fn parts(subject: &Subject, outcome: &Outcome) -> Table {
+    let divider = |entry: usize| match subject.recipe.entries.get(entry).map(|entry| &entry.action) {
+        Some(Action::Divider(model::Part::BeforeUse)) => "before use",
+        Some(Action::Divider(model::Part::AfterAutoclaving)) => "after autoclaving",
+        _ => "",
+    };
+    let words = std::iter::once("ahead").chain(outcome.parts.iter().map(|part| divider(part.entry)));
+    let states = outcome.parts.iter().map(|part| (part.volume_L, &part.state));
+    let states = states.chain((!outcome.parts.is_empty()).then_some((outcome.volume_L, &outcome.finished)));
+    let rows = words.zip(states).map(|(words, (volume_L, state))| {
+        let pH = state.as_ref().map_or_else(|failure| format!("not worked out: {failure}"), |state| format::ph(state.pH()));
+        vec![words.to_owned(), format::volume(volume_L, FIGURES), pH]
+    });
+    Table { columns: vec![Column::words("part"), Column::numbers("comes to"), Column::numbers("pH")], rows: rows.collect() }
+}
+
 fn keeping(subject: &Subject) -> Vec<String> {
     let whole = |line: usize| {
         let text = subject.block.lines.get(line).map_or(0, |line| line.text.len());
         subject.written(line, crate::text::Span::new(0, text))
     };
+    let is_divided = subject.recipe.entries.iter().any(|entry| matches!(entry.action, Action::Divider(_)));
+    let of_part = |storage: &Storage| match storage.part {
+        _ if !is_divided => "",
+        0 => "ahead: ",
+        _ => "once added to: ",
+    };
     let stored = |storage: &Storage| match subject.recipe.like.as_ref().filter(|_| subject.is_taken_over(storage.at)) {
         Some(like) => format!("kept as {}", like.text),
-        None => subject.written(storage.at.line, storage.at.span),
+        None => format!("{}{}", of_part(storage), subject.written(storage.at.line, storage.at.span)),
     };
     let mut said: Vec<String> = subject.recipe.storage.iter().map(stored).collect();
     said.extend(subject.recipe.ready_after.iter().map(|stated| without_comment(&whole(stated.at.line))));

@@ -10,8 +10,6 @@ use super::parse;
 const STATEMENT: usize = 4;
 /// Where what follows begins, in columns from zero.
 const FOLLOWING: usize = 15;
-/// The longest line of a list, in columns; a longer one is broken before its commas.
-const LONGEST: usize = 100;
 
 /// The text with every line laid out.
 pub fn format(text: &str) -> String {
@@ -20,12 +18,11 @@ pub fn format(text: &str) -> String {
 
 /// The text of a tree with every line laid out.
 pub fn format_tree(tree: &Tree) -> String {
-    let ending = tree.lines.iter().find_map(|placed| line_break(&placed.line.text)).unwrap_or("\n");
-    tree.lines.iter().map(|placed| format_line(&placed.line, ending)).collect()
+    tree.lines.iter().map(|placed| format_line(&placed.line)).collect()
 }
 
-/// One logical line laid out. `ending` breaks a list that is too long.
-pub fn format_line(line: &Line, ending: &str) -> String {
+/// One logical line laid out. What the author wrote in one row stays in one row, and a row that was continued stays so.
+pub fn format_line(line: &Line) -> String {
     match &line.content {
         // Whether a junk line is indented decides whether it opens a block, so it stays as it is.
         Content::Junk(_) => line.text.clone(),
@@ -38,19 +35,7 @@ pub fn format_line(line: &Line, ending: &str) -> String {
             if cannot_be_laid_out(line) {
                 return indented(&line.text, indent);
             }
-            let laid_out = lay_out(line, statement, indent, None);
-            let is_list = matches!(
-                statement,
-                Statement::Ware(_)
-                    | Statement::Also(_)
-                    | Statement::Gives(_)
-                    | Statement::Hazard(_)
-                    | Statement::KeepAwayFrom(_)
-                    | Statement::Holds(_)
-                    | Statement::With(_)
-            );
-            let too_long = || laid_out.split(['\n', '\r']).any(|row| row.chars().count() > LONGEST);
-            if is_list && too_long() { lay_out(line, statement, indent, Some(ending)) } else { laid_out }
+            lay_out(line, statement, indent)
         }
     }
 }
@@ -101,8 +86,8 @@ fn line_break(text: &str) -> Option<&str> {
     text.get(at..).map(|rest| if rest.starts_with("\r\n") { "\r\n" } else { rest.get(..1).unwrap_or("\n") })
 }
 
-/// The tokens of a line with white space between them; with `list_ending`, one list entry in a row.
-fn lay_out(line: &Line, statement: &Statement, indent: usize, list_ending: Option<&str>) -> String {
+/// The tokens of a line with white space between them.
+fn lay_out(line: &Line, statement: &Statement, indent: usize) -> String {
     let tokens: Vec<Token> = line.tokens.iter().filter(|token| !token.span.is_empty()).copied().collect();
     let entry_end = entry_end(line, statement, &tokens);
     let mut written = " ".repeat(indent);
@@ -119,9 +104,6 @@ fn lay_out(line: &Line, statement: &Statement, indent: usize, list_ending: Optio
             written.push_str(&" ".repeat(FOLLOWING));
         } else if token.kind == TokenKind::Comment {
             written.push_str(gap);
-        } else if let (Some(ending), TokenKind::Separator) = (list_ending, token.kind) {
-            written.push_str(ending);
-            written.push_str(&" ".repeat(FOLLOWING));
         } else if before.span.end == entry_end && indent == STATEMENT {
             let column = written.chars().count();
             written.push_str(&" ".repeat(FOLLOWING.saturating_sub(column).max(1)));
@@ -247,10 +229,10 @@ mod tests {
     }
 
     #[test]
-    fn a_long_list_breaks_before_its_commas() {
-        let list = format!("flask {}\r\n", ["100 mL ± 0.10 mL"; 7].join(", "));
-        let expected = format!("    flask      {}\r\n", ["100 mL ± 0.10 mL"; 7].join("\r\n               , "));
-        assert_eq!(format(&list), expected);
-        assert_eq!(format(&expected), expected);
+    fn a_long_list_stays_as_its_author_broke_it() {
+        let list = format!("    flask      {}\r\n", ["100 mL ± 0.10 mL"; 7].join(", "));
+        assert_eq!(format(&list), list);
+        let broken = format!("    flask      {}\r\n", ["100 mL ± 0.10 mL"; 7].join("\r\n               , "));
+        assert_eq!(format(&broken), broken);
     }
 }

@@ -324,17 +324,32 @@ fn scope(
     Scope { own: Arc::new(names), built_in }
 }
 
-/// The lab that a recipe is made in: the one it names, the one the configuration names, or the only one in scope.
-pub(super) fn lab_of(scope: &Scope, recipe: Option<&Recipe>, configuration: &Configuration) -> Option<Definition> {
-    let named = |key: &NameKey, text: &str| match scope.find(Namespace::Lab, key, text) {
+/// The lab that a recipe is made in: the one that it names, or that the recipe names which it is `like`; else the one that
+/// the configuration names, or the only one in scope.
+pub(super) fn lab_of(
+    scopes: &HashMap<FileId, Scope>,
+    file: FileId,
+    recipe: Option<&Recipe>,
+    configuration: &Configuration,
+) -> Option<Definition> {
+    let scope = scopes.get(&file)?;
+    let named = |scope: &Scope, key: &NameKey, text: &str| match scope.find(Namespace::Lab, key, text) {
         Lookup::One(definition) => Some(definition.clone()),
         _ => None,
     };
-    if let Some(reference) = recipe.and_then(|recipe| recipe.lab.as_ref()) {
-        return named(&reference.key, &reference.text);
+    let (mut home, mut taken, mut passed) = (scope, recipe, HashSet::new());
+    while let Some(recipe) = taken {
+        if let Some(reference) = &recipe.lab {
+            return named(home, &reference.key, &reference.text);
+        }
+        let like = recipe.like.as_ref();
+        let base = like.map(|like| home.find(Namespace::Ingredient, &like.key, &like.text));
+        let Some(Lookup::One(base)) = base else { break };
+        home = scopes.get(&base.key.file)?;
+        taken = base.block.recipe().filter(|_| passed.insert(&base.key));
     }
     if let Some(name) = &configuration.lab {
-        return named(&NameKey::new(name), name);
+        return named(scope, &NameKey::new(name), name);
     }
     let mut labs = scope.own.all().filter(|(namespace, ..)| *namespace == Namespace::Lab).flat_map(|(.., found)| found);
     match (labs.next(), labs.next()) {
@@ -343,42 +358,35 @@ pub(super) fn lab_of(scope: &Scope, recipe: Option<&Recipe>, configuration: &Con
     }
 }
 
-/// Every name that a block's evaluation looks up.
-fn references(block: &Block) -> Vec<&Reference> {
-    let mut all = Vec::new();
-    let Some(recipe) = block.recipe() else {
-        if let Body::Substance(substance) = &block.body {
-            all.extend(substance.gives.iter().map(|(_, reference)| reference));
-        }
-        return all;
-    };
-    for entry in &recipe.entries {
-        match &entry.action {
-            Action::Add(addition) | Action::Alternative(addition) => {
-                all.push(&addition.what);
-                all.extend(&addition.qualifiers.from);
-            }
-            Action::Pair(pair) => {
-                all.extend([&pair.first, &pair.second]);
-                all.extend(pair.goals.iter().flat_map(goal_references));
-            }
-            Action::MakeUp(make_up) => {
-                all.push(&make_up.what);
-                all.extend(&make_up.alternative);
-                all.extend(make_up.goals.iter().flat_map(goal_references));
-            }
-            Action::AddAll(reference) | Action::DriveOff(reference) => all.push(reference),
-            Action::Found { what, .. } => all.push(what),
-            Action::BringTo(_) | Action::Filter | Action::Wait(_) | Action::Divider(_) => {}
-        }
-    }
-    all.extend(&recipe.like);
-    all.extend(recipe.expectations.iter().filter_map(|expectation| expectation.diluted.as_ref()?.with.as_ref()));
-    all
+/// A name that a block's evaluation looks up, and the file in whose scope it does.
+struct LookedUp<'a> {
+    reference: &'a Reference,
+    home: FileId,
+    /// Where the block itself leads to it: its own line, or the `like` line that takes it over.
+    at: Anchor,
 }
 
-fn goal_references(goal: &Goal) -> impl Iterator<Item = &Reference> {
-    goal.diluted.iter().filter_map(|dilution| dilution.with.as_ref())
+/// Every name that a block's evaluation looks up: those of its own lines, and of the lines that `like` takes over.
+fn looked_up<'a>(snapshot: &'a Snapshot, file: FileId, block: &'a Block) -> Vec<LookedUp<'a>> {
+    let Some(recipe) = block.recipe() else {
+        let Body::Substance(substance) = &block.body else { return Vec::new() };
+        return substance.gives.iter().map(|(_, reference)| LookedUp { reference, home: file, at: reference.at }).collect();
+    };
+    let mut all: Vec<LookedUp> =
+        recipe.references().into_iter().map(|reference| LookedUp { reference, home: file, at: reference.at }).collect();
+    let (mut home, mut like, mut passed) = (file, recipe.like.as_ref(), HashSet::new());
+    while let Some(reference) = like {
+        let Some(Lookup::One(base)) = snapshot.scopes.get(&home).map(|scope| scope.find(Namespace::Ingredient, &reference.key, &reference.text))
+        else {
+            break;
+        };
+        let Some(taken) = base.block.recipe().filter(|_| passed.insert(&base.key)) else { break };
+        home = base.key.file;
+        let at = recipe.like.as_ref().map_or(Anchor::default(), |like| like.at);
+        all.extend(taken.references().into_iter().map(|reference| LookedUp { reference, home, at }));
+        like = taken.like.as_ref();
+    }
+    all
 }
 
 /// One block to be worked out.
@@ -441,11 +449,11 @@ fn evaluate_all(snapshot: &mut Snapshot, last: Option<&Snapshot>, progress: &Pro
 fn nodes(snapshot: &Snapshot) -> Vec<Node> {
     let mut nodes = Vec::new();
     for file in snapshot.files.values() {
-        let scope = snapshot.scopes.get(&file.id);
         for (index, block) in file.model.blocks.iter().enumerate() {
             let mut node =
                 Node { file: file.id, block: index, meanings: Vec::new(), implied: Vec::new(), needs: Vec::new(), leads: Vec::new(), is_open: false };
-            for reference in references(block) {
+            for LookedUp { reference, home, .. } in looked_up(snapshot, file.id, block) {
+                let scope = snapshot.scopes.get(&home);
                 let meaning: Vec<Definition> = match scope.map(|scope| scope.find(Namespace::Ingredient, &reference.key, &reference.text)) {
                     Some(Lookup::One(definition)) => vec![definition.clone()],
                     Some(Lookup::Several(definitions)) => definitions.into_iter().cloned().collect(),
@@ -499,7 +507,7 @@ fn link_nodes(snapshot: &Snapshot, nodes: &mut [Node]) {
                 node.needs.push(*needed);
             }
         }
-        for (reference, meaning) in references(block).into_iter().zip(&node.meanings) {
+        for (LookedUp { reference, at, .. }, meaning) in looked_up(snapshot, node.file, block).into_iter().zip(&node.meanings) {
             for definition in meaning {
                 // A bottle that bears its substance's name holds the substance, not itself.
                 if own_kind == Some(BlockKind::Bottle) && definition.block.kind() == Some(BlockKind::Bottle) {
@@ -511,7 +519,7 @@ fn link_nodes(snapshot: &Snapshot, nodes: &mut [Node]) {
                     if !node.needs.contains(needed) {
                         node.needs.push(*needed);
                     }
-                    node.leads.push((*needed, reference.at, reference.text.clone()));
+                    node.leads.push((*needed, at, reference.text.clone()));
                 }
             }
         }
@@ -533,7 +541,7 @@ fn check(
     let (file, block) = block_of(snapshot, node)?;
     let root = snapshot.roots.get(&file.root)?;
     let scope = snapshot.scopes.get(&node.file)?;
-    let lab = lab_of(scope, block.recipe(), &root.configuration);
+    let lab = lab_of(&snapshot.scopes, node.file, block.recipe(), &root.configuration);
     let stocks: Vec<Arc<Evaluation>> = node
         .needs
         .iter()
@@ -564,6 +572,7 @@ fn check(
     let context = Context {
         constituents: &root.constituents,
         scope,
+        scopes: &snapshot.scopes,
         stocks: &find,
         lab: lab_body,
         settings: &root.configuration.settings,

@@ -267,7 +267,7 @@ impl Snapshot {
         let root = self.root(file)?;
         let scope = self.scope(file);
         let recipe = self.file(file)?.model.blocks.get(block)?.recipe();
-        let lab = super::build::lab_of(&scope, recipe, &root.configuration);
+        let lab = super::build::lab_of(&self.scopes, file, recipe, &root.configuration);
         let stocks = |key: &DefinitionKey| self.evaluation(key).cloned();
         let lab: Option<&Lab> = lab.as_ref().and_then(|definition| match &definition.block.body {
             crate::model::Body::Lab(lab) => Some(lab),
@@ -276,6 +276,7 @@ impl Snapshot {
         Some(f(&Context {
             constituents: &root.constituents,
             scope: &scope,
+            scopes: &self.scopes,
             stocks: &stocks,
             lab,
             settings: &root.configuration.settings,

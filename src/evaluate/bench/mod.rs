@@ -51,7 +51,7 @@ pub(super) fn evaluate(
 ) -> Result<Outcome, Refusal> {
     let (temperature_K, half_width_K) = context.made_at_K(recipe);
     let plan = plan(recipe, index, temperature_K, context)?;
-    let bench = Bench { plan: &plan, temperature_K, context, taken: RefCell::new(vec![None; plan.len()]) };
+    let bench = Bench { recipe, plan: &plan, temperature_K, context, taken: RefCell::new(vec![None; plan.len()]) };
     bench.has_extent(block)?;
     let mut unknowns = vec![0.0; plan.len()];
     let run = bench.meet_finished_goals(&mut unknowns)?;
@@ -75,6 +75,7 @@ struct Sought<'b> {
 }
 
 struct Bench<'a, 'b> {
+    recipe: &'b Recipe,
     plan: &'b [Planned],
     temperature_K: f64,
     context: &'b Context<'a>,

@@ -3,6 +3,8 @@
 use super::{Bench, Run};
 use crate::evaluate::goods::{Goods, scaled, state_of};
 use crate::evaluate::plan::{Planned, Work, litres_of};
+use crate::model::Action;
+use crate::units::Dimension;
 use crate::evaluate::{LineOutcome, Outcome, PartOutcome, Role, Solute};
 
 impl Bench<'_, '_> {
@@ -13,8 +15,9 @@ impl Bench<'_, '_> {
         let mut lines = Vec::new();
         let mut solutes: Vec<Solute> = Vec::new();
         let mut take = |line: &Planned, goods: &Goods, mass_kg: f64, role: Role| {
-            let amount_mol = goods.solute.as_ref().map(|(_, moles, _)| moles * mass_kg);
-            for solute in goods.solutes.iter().filter(|_| role != Role::Alternative) {
+            let by_count = self.is_by_count(line);
+            let amount_mol = goods.solute.as_ref().filter(|_| !by_count).map(|(_, moles, _)| moles * mass_kg);
+            for solute in goods.solutes.iter().filter(|_| role != Role::Alternative && !by_count) {
                 let solute = scaled(solute, mass_kg);
                 match solutes.iter_mut().find(|known| known.definition == solute.definition) {
                     Some(known) => {
@@ -31,10 +34,11 @@ impl Bench<'_, '_> {
                 definition: goods.definition.clone(),
                 role,
                 mass_kg,
-                volume_L: litres_of(goods, mass_kg),
+                volume_L: litres_of(goods, mass_kg).filter(|_| !by_count),
                 amount_mol,
                 concentration_mol_per_L: amount_mol.map(|amount| amount / finals_of_all.litres),
                 per_kg: goods.per_kg.clone(),
+                by_count,
             });
         };
         let mut made_up = false;
@@ -92,5 +96,14 @@ impl Bench<'_, '_> {
             found: None,
             made_up,
         }
+    }
+
+    /// Whether a line adds things by count.
+    fn is_by_count(&self, line: &Planned) -> bool {
+        let amounts = match self.recipe.entries.get(line.entry).map(|entry| &entry.action) {
+            Some(Action::Add(addition) | Action::Alternative(addition)) => addition.amounts.as_slice(),
+            _ => &[],
+        };
+        amounts.iter().any(|amount| amount.dimension() == Dimension::Count)
     }
 }

@@ -38,12 +38,14 @@ impl Bench<'_, '_> {
         let temperature_K = self.temperature_of(beaker);
         let before = self.value(&start.mixture, goal, &Property::Ph, line.at, temperature_K)?;
         let start_state = self.state(&start, line.at)?;
+        let on_the_meter = start_state.pH();
         let point = |state: State| SetPoint {
             entry: line.entry,
             at: line.at,
             aim,
             window,
-            pH_before: before,
+            // What the meter reads before anything is added.
+            pH_before: on_the_meter,
             state,
             liquid_of: liquid.and_then(|index| self.plan.get(index)).map(|line| line.entry),
             elsewhere: goal.temperature.is_some() || goal.diluted.is_some(),

@@ -116,7 +116,7 @@ impl Planner<'_, '_> {
                 }
             }
             Dimension::Count => {
-                // A tablet or vial brings its stated mass, where there is one; its content is not modelled.
+                // What a tablet or a vial holds is not said; the sheet says that it is not counted.
                 Dose::Fixed(0.0)
             }
             _ => {

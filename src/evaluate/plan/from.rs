@@ -19,8 +19,8 @@ impl Planner<'_, '_> {
         }
         let stated = match amount.dimension() {
             // `% v/v` of a bottle counts the bottle as bought.
-            Dimension::VolumeFraction => Some(Dose::PerLitre(self.mass_of_litres(addition, &stock, amount.value)?)),
-            Dimension::Volume => Some(Dose::Fixed(self.mass_of_litres(addition, &stock, amount.value)?)),
+            Dimension::VolumeFraction => Some(Dose::PerLitre(self.mass_of_stock(from, &stock, amount.value)?)),
+            Dimension::Volume => Some(Dose::Fixed(self.mass_of_stock(from, &stock, amount.value)?)),
             _ => None,
         };
         let wanted = match ingredient(&addition.what, false, self.context) {
@@ -68,6 +68,15 @@ impl Planner<'_, '_> {
             .map(|(key, ..)| (key, share, molar_mass.unwrap_or(0.0) * share))
             .or(Some((stock.definition.clone(), share, 0.0)));
         Ok(Work::Add { goods: Goods { solute, ..stock }, dose })
+    }
+
+    /// Mass of a volume of the stock itself, kg.
+    fn mass_of_stock(&self, from: &Reference, stock: &Goods, litres: f64) -> Result<f64, Refusal> {
+        stock.mass_of_litres(litres).ok_or_else(|| {
+            Finding::new(Code::UnitOfWrongKind, from.at, format!("{} is no liquid, so no volume of it is taken.", from.text))
+                .help("Name a solution or a bottle after `from`.")
+                .into()
+        })
     }
 
     /// How much of a substance a kilogram of a stock can give, mol, matched by what the substance gives in water.

@@ -149,25 +149,6 @@ impl Dose {
     }
 }
 
-/// The written value that tells a member of a series from the others.
-pub fn series_value(recipe: &Recipe, index: usize) -> Option<String> {
-    recipe.entries.iter().find_map(|entry| match &entry.action {
-        Action::Add(addition) if addition.amounts.len() > 1 => addition.amounts.get(index).map(|amount| {
-            format!("{} {}", crate::units::format::plain(amount.unit.from_base(amount.value)), amount.unit.symbol())
-        }),
-        Action::MakeUp(make_up) if make_up.goals.len() > 1 => make_up.goals.get(index).and_then(|goal| match &goal.kind {
-            GoalKind::Property { property, aim, unit, .. } => Some(match unit {
-                None => format!("{} {}", property.words(), crate::units::format::plain(*aim)),
-                Some(unit) => {
-                    format!("{} {} {}", property.words(), crate::units::format::plain(unit.from_base(*aim)), unit.symbol())
-                }
-            }),
-            _ => None,
-        }),
-        _ => None,
-    })
-}
-
 /// The member of a list that goes with the series' index; a single value goes with all.
 fn pick<T>(list: &[T], index: usize) -> Option<&T> {
     if list.len() == 1 { list.first() } else { list.get(index) }

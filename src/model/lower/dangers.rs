@@ -3,7 +3,7 @@
 use std::sync::Arc;
 
 use super::quantities::{amount, base_value};
-use super::solution::expectation;
+use super::lines::expectation;
 use super::{Lowering, defined_name, reference, statement_span, statements};
 use crate::finding::{Anchor, Code, Finding};
 use crate::model::*;

@@ -4,6 +4,7 @@ mod dangers;
 mod data;
 mod faults;
 mod lab;
+mod lines;
 mod quantities;
 mod solution;
 
@@ -112,14 +113,15 @@ fn lower_block(role: BlockRole, lines: Vec<Arc<Line>>) -> Block {
     let body = match role {
         BlockRole::Head => {
             lowering.misplaced(&lines, &role);
+            lowering.edition(&lines);
             Body::None
         }
         BlockRole::Nameless => Body::None,
         BlockRole::Defines(kind) => {
             lowering.misplaced(&lines, &role);
             match kind {
-                BlockKind::Solution => Body::Solution(lowering.recipe(&lines)),
-                BlockKind::Bottle => Body::Bottle(lowering.recipe(&lines)),
+                BlockKind::Solution => Body::Solution(lowering.recipe(kind, &lines)),
+                BlockKind::Bottle => Body::Bottle(lowering.recipe(kind, &lines)),
                 BlockKind::Substance => Body::Substance(lowering.substance(&lines)),
                 BlockKind::Ion => Body::Ion(lowering.ion(&lines)),
                 BlockKind::Solid => Body::Solid(lowering.solid(&lines)),
@@ -151,6 +153,7 @@ fn reference(line: usize, name: &tree::Name) -> Reference {
         key: NameKey::new(&name.text),
         at: Anchor::new(line, name.span),
         strength: None,
+        home: None,
     }
 }
 
@@ -184,6 +187,25 @@ impl Lowering {
                         format!("This statement belongs in {home}, not {}.", place_of(role)),
                     )
                     .help(format!("Move the line to {home}; here it has no effect.")),
+                );
+            }
+        }
+    }
+}
+
+/// The edition of the language that this program reads.
+const EDITION: f64 = 1.0;
+
+impl Lowering {
+    /// Reports an edition that is not known: what the file means then is not known either.
+    fn edition(&mut self, lines: &[Arc<Line>]) {
+        for (index, line, statement) in statements(lines) {
+            let Statement::Language(Slot::Given(edition)) = statement else { continue };
+            if edition.value != EDITION {
+                let message = format!("This file asks for edition {} of the language; this program knows edition 1.", edition.value);
+                self.findings.push(
+                    Finding::new(Code::UnknownEdition, Anchor::new(index, statement_span(line)), message)
+                        .help("Use a program that knows the edition, or write `language 1` if the file is written in it."),
                 );
             }
         }

@@ -2,13 +2,14 @@
 
 use std::sync::Arc;
 
-use super::quantities::{amount, base_value, dilution, goals, half_width, limits, property, stated};
-use super::{Lowering, defined_name, reference, statement_span, statements, strong_reference};
-use crate::finding::{Anchor, Code, Finding};
+use super::lines::{acceptance, addition, atmosphere, expectation, make_up, pair, part, series_values, storage};
+use super::quantities::{amount, base_value, half_width, stated};
+use super::{Lowering, defined_name, reference, statement_span, statements};
+use crate::finding::{Anchor, Code, Finding, Fix};
 use crate::model::block::BlockRole;
 use crate::model::*;
-use crate::syntax::formula;
-use crate::syntax::tree::{self, Amounts, BlockKind, GasKind, Line, QualifierKind, Slot, Statement};
+use crate::syntax::tree::{self, Amounts, BlockKind, Line, Slot, Statement};
+use crate::text::Span;
 use crate::units::Dimension;
 
 /// The blocks that define something others can name.
@@ -73,10 +74,10 @@ fn carries_values(statement: &Statement) -> bool {
 
 impl Lowering {
     /// The recipe that the lines of a solution or a bottle say.
-    pub(super) fn recipe(&mut self, lines: &[Arc<Line>]) -> Recipe {
+    pub(super) fn recipe(&mut self, kind: BlockKind, lines: &[Arc<Line>]) -> Recipe {
         let mut recipe = Recipe { sound: true, members: 1, ..Recipe::default() };
         for (index, line, statement) in statements(lines) {
-            let understood = self.statement(&mut recipe, index, line, statement);
+            let understood = self.is_one_amount(kind, index, line, statement) && self.statement(&mut recipe, index, line, statement);
             if !understood && carries_values(statement) {
                 recipe.sound = false;
             }
@@ -89,9 +90,34 @@ impl Lowering {
         recipe
     }
 
+    /// A bottle's label may give a range; what goes into a solution is one amount.
+    fn is_one_amount(&mut self, kind: BlockKind, index: usize, line: &Line, statement: &Statement) -> bool {
+        let (Statement::Ingredient(given) | Statement::Or(given)) = statement else { return true };
+        let Some(Amounts::Range(from, to)) = given.amounts.given().filter(|_| kind == BlockKind::Solution) else { return true };
+        let at = Anchor::new(index, from.span.to(to.span));
+        let (low, high) = (to.unit.from_base(amount(from).value), to.unit.from_base(amount(to).value));
+        let digits = |value: f64| crate::units::format::plain(value);
+        let middle = format!("{} {}", digits(0.5 * (low + high)), to.unit.symbol());
+        let half = format!("{} {}", digits(0.5 * (high - low)), to.unit.symbol());
+        let end = line.text.trim_end_matches(['\n', '\r']);
+        let end = line.tokens.iter().find(|token| token.kind == tree::TokenKind::Comment).map_or(end, |comment| {
+            end.get(..comment.span.start).unwrap_or(end)
+        });
+        let end = Anchor::new(index, Span::empty(end.trim_end().len()));
+        self.findings.push(
+            Finding::new(Code::BadNumber, at, "A range does not say how much goes in.")
+                .help("Write the amount that is aimed at, and the range as its limit with ±.")
+                .fix(Fix::replace(format!("Write {middle} … ± {half}"), at, middle).with(end, format!(", ± {half}"))),
+        );
+        false
+    }
+
     /// Takes one statement over; false where a part that counts is missing or cannot be read.
     fn statement(&mut self, recipe: &mut Recipe, index: usize, line: &Line, statement: &Statement) -> bool {
         let at = Anchor::new(index, statement_span(line));
+        if recipe.series.is_empty() {
+            recipe.series = series_values(line, statement).unwrap_or_default();
+        }
         let push = |recipe: &mut Recipe, action| recipe.entries.push(Entry { at, action });
         match statement {
             Statement::Ingredient(given) => match addition(index, given) {
@@ -151,7 +177,7 @@ impl Lowering {
                 None => return false,
             },
             Statement::UsedAt(used) => return self.used_at(recipe, index, at, used),
-            Statement::StoredAt(stored) => match storage(at, stored) {
+            Statement::StoredAt(stored) => match storage(at, part(recipe), stored) {
                 Some(storage) => recipe.storage.push(storage),
                 None => return false,
             },
@@ -200,6 +226,12 @@ impl Lowering {
                 if let Some(text) = text.given() {
                     let at = Anchor::new(index, text.span);
                     recipe.steps.push(Stated { value: text.text.clone(), at });
+                }
+            }
+            Statement::Record(text) => {
+                if let Some(text) = text.given() {
+                    let at = Anchor::new(index, text.span);
+                    recipe.records.push(Stated { value: text.text.clone(), at });
                 }
             }
             Statement::Document(document) => {
@@ -343,156 +375,4 @@ impl Lowering {
             }
         }
     }
-}
-
-fn addition(line: usize, given: &tree::Ingredient) -> Option<Addition> {
-    let amounts = match given.amounts.given()? {
-        Amounts::One(quantity) => vec![amount(quantity)],
-        Amounts::Series(quantities) => quantities.iter().map(amount).collect(),
-        Amounts::Range(from, to) => {
-            let (from, to) = (amount(from), amount(to));
-            vec![Amount {
-                value: 0.5 * (from.value + to.value),
-                half_range: 0.5 * (to.value - from.value),
-                span: from.span.to(to.span),
-                ..to
-            }]
-        }
-    };
-    let as_formula = match &given.as_formula {
-        None => None,
-        Some(slot) => {
-            let text = slot.given()?;
-            Some(Stated { value: formula::parse(&text.text).ok()?, at: Anchor::new(line, text.span) })
-        }
-    };
-    Some(Addition {
-        about: given.about,
-        as_formula,
-        what: strong_reference(line, &given.strength, &given.name)?,
-        qualifiers: qualifiers(line, &given.qualifiers, amounts.first().map(|amount| amount.unit))?,
-        amounts,
-    })
-}
-
-fn qualifiers(line: usize, given: &[tree::Qualifier], beside: Option<crate::units::Unit>) -> Option<Qualifiers> {
-    let mut all = Qualifiers::default();
-    for qualifier in given {
-        let at = Anchor::new(line, qualifier.span);
-        match &qualifier.kind {
-            QualifierKind::Tolerance(tolerance) => {
-                all.tolerance = Some(Stated { value: half_width(tolerance, beside), at });
-            }
-            QualifierKind::Purity(slot) => all.purity = Some(stated(line, slot, Dimension::Percent)?),
-            QualifierKind::Water(slot) => all.water = Some(stated(line, slot, Dimension::Percent)?),
-            QualifierKind::DriedAt { temperature, .. } => {
-                all.dried_at = Some(stated(line, temperature, Dimension::Temperature)?);
-            }
-            QualifierKind::Density(slot) => all.density = Some(stated(line, slot, Dimension::MassConcentration)?),
-            QualifierKind::From(slot) => all.from = Some(reference(line, slot.given()?)),
-            QualifierKind::About(slot) => all.about = Some(Stated { value: amount(slot.given()?), at }),
-            QualifierKind::AtMost(slot) => all.at_most = Some(Stated { value: amount(slot.given()?), at }),
-            QualifierKind::ByWeight => all.by_weight = true,
-            QualifierKind::At(slot) => all.at = Some(stated(line, slot, Dimension::Temperature)?),
-            QualifierKind::Grade(_) | QualifierKind::Lot(_) => {}
-            QualifierKind::Unreadable => return None,
-        }
-    }
-    Some(all)
-}
-
-fn pair(line: usize, given: &tree::Pair) -> Option<Pair> {
-    let goals = goals(line, given.target.given()?);
-    if goals.is_empty() {
-        return None;
-    }
-    Some(Pair {
-        amount: amount(given.amount.given()?),
-        first: strong_reference(line, &given.first_strength, &given.first)?,
-        second: strong_reference(line, &given.second_strength, &given.second)?,
-        goals,
-    })
-}
-
-fn make_up(line: usize, given: &tree::QuantumSatis) -> Option<MakeUp> {
-    let goals = goals(line, given.target.given()?);
-    if goals.is_empty() {
-        return None;
-    }
-    Some(MakeUp {
-        what: strong_reference(line, &given.strength, &given.name)?,
-        alternative: match &given.alternative {
-            None => None,
-            Some((strength, name)) => Some(strong_reference(line, strength, name)?),
-        },
-        goals,
-        qualifiers: qualifiers(line, &given.qualifiers, None)?,
-    })
-}
-
-fn storage(at: Anchor, stored: &tree::StoredAt) -> Option<Storage> {
-    let from = base_value(&stored.from, Dimension::Temperature)?;
-    let to = match &stored.to {
-        None => from,
-        Some(slot) => base_value(slot, Dimension::Temperature)?,
-    };
-    Some(Storage {
-        at,
-        low: (!stored.below).then_some(from),
-        high: to,
-        duration: stored.duration.as_ref().and_then(|slot| base_value(slot, Dimension::Time)),
-        material: stored.material.as_ref().map(|text| text.text.clone()),
-        dark: stored.dark,
-    })
-}
-
-fn atmosphere(line: usize, gas: &tree::Gas) -> Option<Atmosphere> {
-    Some(match &gas.kind {
-        GasKind::Air => Atmosphere::Air,
-        GasKind::Part { quantity, of } => Atmosphere::Gas {
-            quantity: amount(quantity),
-            of: reference(line, of.given()?),
-            moist: gas.moist,
-        },
-    })
-}
-
-pub(super) fn expectation(line: usize, at: Anchor, expect: &tree::Expect) -> Option<Expectation> {
-    let limits = limits(expect.range.given()?);
-    Some(Expectation {
-        at,
-        property: property(line, expect.property.given()?)?,
-        low: limits.low,
-        high: limits.high,
-        unit: limits.unit,
-        as_formula: match &expect.as_formula {
-            None => None,
-            Some(slot) => {
-                let text = slot.given()?.text.clone();
-                let formula = formula::parse(&text).ok()?;
-                Some((text, formula))
-            }
-        },
-        temperature: match &expect.at {
-            None => None,
-            Some(slot) => Some(base_value(slot, Dimension::Temperature)?),
-        },
-        diluted: match &expect.diluted {
-            None => None,
-            Some(given) => Some(dilution(line, given)?),
-        },
-    })
-}
-
-fn acceptance(line: usize, at: Anchor, accept: &tree::Accept) -> Option<Acceptance> {
-    let code = accept.code.given()?;
-    Some(Acceptance {
-        at,
-        code: Stated { value: code.text.clone(), at: Anchor::new(line, code.span) },
-        on: match &accept.on {
-            None => None,
-            Some(slot) => Some(reference(line, slot.given()?)),
-        },
-        because: accept.because.given()?.text.clone(),
-    })
 }
