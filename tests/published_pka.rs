@@ -29,7 +29,8 @@ fn a_second_source_agrees_or_the_choice_is_told() {
         let published: f64 = published.parse().expect("a pKa");
         let name = format!("pKa of {acid}");
         let constant = chemistry.constants().find(|(_, constant)| constant.name == name).unwrap_or_else(|| panic!("the library has no {name}")).1;
-        let difference = -constant.log10_k(298.15) - published;
+        // The constant forms the acid, so its logarithm is the pKa.
+        let difference = constant.log10_k(298.15) - published;
         let choice = CHOSEN.iter().find(|(chosen, other, ..)| *chosen == acid && source.starts_with(other));
         println!("{acid:28} {published:8.3} {difference:+8.3}  {source}");
         compared += 1;

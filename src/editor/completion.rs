@@ -330,7 +330,7 @@ mod tests {
         assert!(item.detail.contains("pKa 7.4"), "{}", item.detail);
         assert!(item.documentation.contains("zwitterionic HEPES") && item.documentation.contains("per kelvin"), "{}", item.documentation);
         // With calcium in the solution, phosphate is named with what speaks against it.
-        let calcium = described(&recipe("    2 mmol/L   calcium chloride dihydrate\n"), "disodium hydrogen phosphate");
+        let calcium = described(&recipe("    2 mmol/L   calcium chloride dihydrate\n").replace('‸', "disodium hyd‸"), "disodium hydrogen phosphate");
         assert!(calcium.contains("calcium"), "{calcium}");
         // After a mass nothing is recommended.
         assert!(!described("solution A\n    5 g        ‸\n    q.s.       water to pH 7.5\n", "HEPES").contains("per kelvin"));

@@ -100,7 +100,8 @@ impl Measure {
     /// Whether a difference shows in the digits that are told: half a unit of the last one.
     pub fn is_worth_showing(self, old: f64, new: f64) -> bool {
         if self == Measure::Ph {
-            return (new - old).abs() >= 0.005;
+            // A thousandth of it leaves room for what the subtraction costs.
+            return (new - old).abs() >= 0.005 * 0.999;
         }
         let largest = old.abs().max(new.abs());
         if largest == 0.0 {
