@@ -25,7 +25,7 @@ const LEAST: f64 = 1e-3;
 const LIVING_K: f64 = 303.15;
 
 /// Gas constant, Pa·L/(mol·K).
-const GAS_CONSTANT_PASCAL: f64 = 8314.462_618;
+const GAS_CONSTANT_PASCAL: f64 = 8_314.462_618;
 
 fn pressure(pascal: f64) -> String {
     format!("{} kPa", format::significant(pascal / 1000.0, 2))

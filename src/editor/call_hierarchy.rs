@@ -90,7 +90,7 @@ fn users(snapshot: &Snapshot, definition: &Definition) -> Vec<(HierarchyItem, Ve
         })
         .collect();
     let path = |item: &HierarchyItem| snapshot.file(item.file).map(|file| file.path.clone());
-    users.sort_by(|(one, _), (other, _)| (path(one), one.span).cmp(&(path(other), other.span)));
+    users.sort_by_key(|(one, _)| (path(one), one.span));
     users
 }
 

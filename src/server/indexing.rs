@@ -66,8 +66,8 @@ async fn tell(client: Client, progress: Arc<Progress>, is_over: Arc<AtomicBool>)
     say(WorkDoneProgress::Begin(begin)).await;
     while !is_over.load(Ordering::SeqCst) {
         let (done, total) = (progress.done(), progress.total());
-        if total > 0 {
-            let percentage = u32::try_from(100 * done.min(total) / total).ok();
+        if let Some(percentage) = (100 * done.min(total)).checked_div(total) {
+            let percentage = u32::try_from(percentage).ok();
             say(WorkDoneProgress::Report(WorkDoneProgressReport { percentage, ..WorkDoneProgressReport::default() })).await;
         }
         tokio::time::sleep(STEP).await;

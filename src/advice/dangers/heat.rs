@@ -25,7 +25,7 @@ pub fn hot_when_made_up(case: &Case, findings: &mut Vec<Finding>) {
         .enumerate()
         .filter(|(index, entry)| *index < mark && matches!(entry.action, Action::BringTo(_)))
         .map(|(index, _)| index)
-        .last();
+        .next_back();
     for outcome in case.outcomes() {
         let Some((kelvin, line)) = warming(case, outcome, brought, mark) else { continue };
         if kelvin.abs() <= OFF_K {

@@ -39,7 +39,7 @@ pub fn offers(site: &Site) -> Vec<CodeAction> {
             forms.push((!is_hydrate, other, other_mass));
         }
     }
-    forms.sort_by(|(one, ..), (other, ..)| one.cmp(other));
+    forms.sort_by_key(|(one, ..)| *one);
     let action = |(is_salt, other, other_mass): (bool, Definition, f64)| {
         let name = written_form(other.name());
         let mut edits = vec![(addition.what.at.span, name)];

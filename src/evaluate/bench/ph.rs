@@ -116,7 +116,7 @@ impl Bench<'_, '_> {
 }
 
 /// A narrow bracket around a mass that was right before; none where what is missed does not change its sign there.
-fn narrow(mass: f64, miss: impl Fn(f64) -> Result<f64, Refusal>) -> Option<(f64, f64)> {
+fn narrow(mass: f64, miss: &dyn Fn(f64) -> Result<f64, Refusal>) -> Option<(f64, f64)> {
     [1e-6, 1e-3, 0.03].into_iter().find_map(|width| {
         let (low, high) = (mass * (1.0 - width), mass * (1.0 + width));
         let (at_low, at_high) = (miss(low).ok()?, miss(high).ok()?);
