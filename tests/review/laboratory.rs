@@ -50,9 +50,14 @@ solution Formate eluent
     4.603 g    formic acid
 ";
 
+/// Where the folders of these tests stand. Git looks for repositories below it only, for it may itself lie in one.
+fn laboratories() -> PathBuf {
+    Path::new(env!("CARGO_TARGET_TMPDIR")).join("review")
+}
+
 /// A folder that holds a repository with these files and one commit.
 pub fn repository(name: &str) -> Repository {
-    let folder = Path::new(env!("CARGO_TARGET_TMPDIR")).join("review").join(name);
+    let folder = laboratories().join(name);
     let _ = fs::remove_dir_all(&folder);
     fs::create_dir_all(&folder).unwrap();
     let repository = Repository { folder };
@@ -109,6 +114,7 @@ impl Repository {
             .args(["-c", "user.name=Mirela Tanase", "-c", "user.email=bench@example.org", "-c", "core.pager=cat"])
             .args(arguments)
             .env("PATH", path.unwrap())
+            .env("GIT_CEILING_DIRECTORIES", laboratories())
             .env("GIT_CONFIG_GLOBAL", "/dev/null")
             .env("GIT_CONFIG_SYSTEM", "/dev/null")
             .env("GIT_AUTHOR_DATE", "2026-03-02T09:00:00Z")
@@ -136,7 +142,12 @@ impl Repository {
         for variable in ["NO_COLOR", "CLICOLOR", "CLICOLOR_FORCE", "GIT_DIR", "GIT_INDEX_FILE", "GIT_WORK_TREE"] {
             command.env_remove(variable);
         }
-        command.env("GIT_CONFIG_GLOBAL", "/dev/null").env("GIT_CONFIG_SYSTEM", "/dev/null").output().unwrap()
+        command
+            .env("GIT_CEILING_DIRECTORIES", laboratories())
+            .env("GIT_CONFIG_GLOBAL", "/dev/null")
+            .env("GIT_CONFIG_SYSTEM", "/dev/null")
+            .output()
+            .unwrap()
     }
 
     /// What the program prints, where it ends with this code.
